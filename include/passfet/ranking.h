@@ -1,6 +1,7 @@
 /* ranking.h: checks, verdict and order.
 **
-** A part passes when every check is met; it fails when one is not; it is unassessed when none failed
+** A part passes when every check is met; it fails when one is not; it is unassessed when none
+*failed
 ** and some could not be made. Unassessed ranks below every pass and is never one.
 */
 #ifndef PASSFET_RANKING_H
@@ -59,11 +60,13 @@ typedef struct pf_assessment {
 pf_status pf_assess(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                     pf_assessment *assessment);
 
-/* One check as a sentence: "start_up: SOA margin 0.84, required 1.3", "unassessed: …". Writes at most
+/* One check as a sentence: "start_up: SOA margin 0.84, required 1.3", "unassessed: …". Writes at
+*most
 ** room bytes, NUL included; returns the whole length as snprintf does. */
 int pf_check_print(const pf_plan *plan, const pf_check *check, char *text, size_t room);
 
-/* The check that decides: the first that failed, else the first that could not be made, else the one
+/* The check that decides: the first that failed, else the first that could not be made, else the
+*one
 ** of the limiting event; NULL for none. Borrowed from the assessment. */
 const pf_check *pf_assessment_decisive(const pf_assessment *assessment);
 
@@ -93,12 +96,12 @@ const char *pf_sort_key_text(pf_sort_key key);
 typedef struct pf_row {
     char *part, *maker, *package; /* maker and package NULL where not stated */
     double price;
-    pf_verdict verdict;             /* worst over the profiles */
-    size_t deciding_profile;        /* the one with that verdict and the smallest margin */
-    double soa_margin;              /* smallest over the profiles, NaN where none was assessed */
-    double conduction_loss_W;       /* highest */
+    pf_verdict verdict;       /* worst over the profiles */
+    size_t deciding_profile;  /* the one with that verdict and the smallest margin */
+    double soa_margin;        /* smallest over the profiles, NaN where none was assessed */
+    double conduction_loss_W; /* highest */
     double running_degC, peak_junction_degC; /* highest */
-    pf_assessment *assessment;      /* one per profile */
+    pf_assessment *assessment;               /* one per profile */
 } pf_row;
 
 typedef struct pf_ranking {
@@ -117,14 +120,23 @@ void pf_ranking_clear(pf_ranking *ranking);
 pf_status pf_ranking_add(pf_ranking *ranking, const pf_part *part, unsigned remarks,
                          pf_scratch *scratch) PF_MUST_USE;
 
-/* Orders the rows: pass, unassessed, fail; within each by the keys in turn, then by the default keys
+/* Orders the rows: pass, unassessed, fail; within each by the keys in turn, then by the default
+*keys
 ** (margin, loss, junction), then by part and maker, so that the order never depends on the input's.
-** Values that are not stated come last. */
-void pf_ranking_sort(pf_ranking *ranking, const pf_sort_key *key, size_t key_count);
+** Values that are not stated come last. PF_NO_MEMORY leaves the order as it was. */
+pf_status pf_ranking_sort(pf_ranking *ranking, const pf_sort_key *key,
+                          size_t key_count) PF_MUST_USE;
 
 /* --- Conditions of --where ----------------------------------------------------------------- */
 
-typedef enum pf_comparison { PF_EQUAL, PF_UNEQUAL, PF_LESS, PF_AT_MOST, PF_MORE, PF_AT_LEAST } pf_comparison;
+typedef enum pf_comparison {
+    PF_EQUAL,
+    PF_UNEQUAL,
+    PF_LESS,
+    PF_AT_MOST,
+    PF_MORE,
+    PF_AT_LEAST
+} pf_comparison;
 
 /* One comparison on a rating, a text field or polarity. A rating that is not stated meets none. */
 typedef struct pf_condition {

@@ -1,0 +1,359 @@
+/* events.c: every event of a plan on one part, at every corner; the worst counts.
+**
+** A corner that cannot be assessed makes the event unassessed, unless another corner is already
+*known
+** to be worse than required: what is known to fail is said.
+*/
+#include "base/memory.h"
+#include "base/number.h"
+#include "device/model.h"
+#include "stress/plan.h"
+#include "stress/response.h"
+#include "stress/steady_state.h"
+
+#include <math.h>
+
+/* Everything that the events of one part share. */
+typedef struct evaluation {
+    const pf_plan *plan;
+    const pf_part *part;
+    pf_scratch *scratch;
+    pf_stress *stress;
+    pf_steady_state running;
+} evaluation;
+
+/* One event: its outcome so far and what it starts from. */
+typedef struct trial {
+    const evaluation *on;
+    const pf_slot *slot;
+    pf_outcome *outcome;
+    pf_subject subject;
+    bool junction_unknown; /* at some corner */
+    pf_cause unknown;      /* at some corner, why dT_hot is not known */
+    unsigned unknown_corner;
+} trial;
+
+static double lower_of(double limit, double other)
+{
+    return other < limit ? other : limit; /* a limit not stated (NaN) never is */
+}
+
+double pf_allowed_degC(const pf_profile *profile, const pf_part *part)
+{
+    const pf_derating *rule = &profile->derating;
+    double allowed = part->tj_max_degC;
+    if (!pf_is_stated(allowed)) return PF_NONE;
+    allowed = lower_of(allowed, profile->value[PF_JUNCTION_LIMIT].min);
+    allowed = lower_of(allowed, rule->junction_limit_degC);
+    allowed = lower_of(allowed, part->tj_max_degC - rule->junction_below_max_K);
+    return lower_of(allowed, part->tj_max_degC * rule->junction_share);
+}
+
+static double start_of(const evaluation *on, pf_event event)
+{
+    bool at_start = event == PF_START_UP || event == PF_SHORT_AT_START;
+    if (at_start && on->plan->profile.start_from_ambient)
+        return on->plan->profile.value[PF_AMBIENT_TEMPERATURE].max;
+    return on->running.junction_degC;
+}
+
+static double margin_of(const trial *test, double hot_rise_K)
+{
+    double room = test->on->stress->allowed_degC - test->outcome->start_degC;
+    if (room <= 0) return 0;
+    return hot_rise_K > 0 ? room / hot_rise_K : INFINITY;
+}
+
+static void note_corner(trial *test, unsigned corner, double margin, double worst_s,
+                        const pf_wave *scalars)
+{
+    pf_outcome *outcome = test->outcome;
+    if (pf_is_stated(outcome->soa_margin) && !(margin < outcome->soa_margin)) return;
+    outcome->soa_margin = margin;
+    outcome->corner = corner;
+    outcome->worst_time_s = worst_s;
+    outcome->peak_power_W = scalars->peak_power_W;
+    outcome->energy_J = scalars->energy_J;
+    outcome->duration_s = scalars->duration_s;
+}
+
+/* Takes the response of one corner into the outcome. */
+static void take(trial *test, unsigned corner, const pf_response *response, const pf_wave *scalars)
+{
+    pf_outcome *outcome = test->outcome;
+    double junction = outcome->start_degC + response->junction_rise_K;
+    test->on->stress->remarks |= response->remarks;
+    outcome->peak_current_A = fmax(outcome->peak_current_A, scalars->peak_current_A);
+    if (!pf_is_stated(junction)) test->junction_unknown = true;
+    outcome->peak_junction_degC = fmax(outcome->peak_junction_degC, junction);
+    double margin = margin_of(test, response->hot_rise_K);
+    bool hot = outcome->start_degC >= test->on->stress->allowed_degC;
+    if (pf_is_stated(response->hot_rise_K) || hot) {
+        note_corner(test, corner, margin, response->worst_s, scalars);
+    } else if (test->unknown == PF_CAUSE_NONE) {
+        test->unknown = response->cause;
+        test->unknown_corner = corner;
+    }
+}
+
+static pf_wave rectangle_scalars(double vds_V, double id_A, double time_s)
+{
+    return (pf_wave){.duration_s = time_s,
+                     .energy_J = vds_V * id_A * time_s,
+                     .peak_power_W = vds_V * id_A,
+                     .peak_current_A = id_A};
+}
+
+static void try_rectangle(trial *test, unsigned corner, double vds_V, double id_A, double time_s)
+{
+    pf_response response;
+    pf_wave scalars = rectangle_scalars(vds_V, id_A, time_s);
+    pf_respond_rectangle(&test->subject, vds_V, id_A, time_s, &response);
+    take(test, corner, &response, &scalars);
+}
+
+/* Heating of the case by all tries so far, in K per W of mean power. Equation (19). */
+static double case_warming(const trial *test, const pf_corner *at, double interval_s, double count)
+{
+    const pf_part *part = test->on->part;
+    double board = at->value[PF_CASE_TO_AMBIENT], heat = at->value[PF_CASE_HEAT_CAPACITY];
+    if (!pf_is_stated(board)) {
+        if (test->subject.zth->path == PF_JUNCTION_AMBIENT) return 0; /* Zth has it already */
+        test->on->stress->remarks |= PF_REMARK_CASE_FROM_RTH;
+        return pf_is_stated(part->rth_jc_KpW) ? part->rth_ja_KpW - part->rth_jc_KpW
+                                              : part->rth_ja_KpW;
+    }
+    return pf_is_stated(heat) ? board * -expm1(-count * interval_s / (board * heat)) : board;
+}
+
+static void try_retry(trial *test, unsigned corner, const pf_corner *at)
+{
+    const pf_profile *profile = &test->on->plan->profile;
+    double vds_V = at->value[PF_SUPPLY_VOLTAGE], on_s = at->value[PF_FAULT_TIME];
+    double id_A = pf_corner_fault_A(profile, at), interval_s = at->value[PF_RETRY_INTERVAL];
+    double count = at->value[PF_RETRY_COUNT];
+    if (!pf_is_stated(count)) count = INFINITY; /* endless, or not said: the limit */
+    pf_response response;
+    pf_wave scalars = rectangle_scalars(vds_V, id_A, on_s);
+    pf_respond_rectangle(&test->subject, vds_V, id_A, on_s, &response);
+    double earlier = pf_train_zth(test->subject.zth, on_s, interval_s, count) +
+                     case_warming(test, at, interval_s, count) * on_s / interval_s;
+    if (!pf_is_stated(earlier) && response.cause == PF_CAUSE_NONE)
+        response.cause = pf_zth_stated(test->subject.zth) ? PF_CAUSE_NO_RTH : PF_CAUSE_NO_ZTH;
+    response.hot_rise_K += vds_V * id_A * earlier;
+    response.junction_rise_K += vds_V * id_A * earlier;
+    take(test, corner, &response, &scalars);
+}
+
+/* Energy of the kick that the inductance gives when the current is cut. Equation (20). */
+static void try_turn_off(trial *test, unsigned corner, const pf_corner *at)
+{
+    const evaluation *on = test->on;
+    const pf_part *part = on->part;
+    pf_outcome *outcome = test->outcome;
+    double vds_V = at->value[PF_SUPPLY_VOLTAGE], vds_max_V = part->vds_max_V;
+    double id_A = fmax(pf_corner_fault_A(&on->plan->profile, at), at->value[PF_TRIP_CURRENT]);
+    double energy_J = 0.5 * at->value[PF_SUPPLY_INDUCTANCE] * id_A * id_A;
+    outcome->peak_current_A = fmax(outcome->peak_current_A, id_A);
+    if (on->plan->profile.stated[PF_CLAMP_VOLTAGE]) return; /* the clamp takes it */
+    energy_J = vds_max_V > vds_V ? energy_J * vds_max_V / (vds_max_V - vds_V) : INFINITY;
+    if (!pf_is_stated(vds_max_V)) energy_J = PF_NONE;
+    if (pf_is_stated(outcome->avalanche_J) && !(energy_J > outcome->avalanche_J)) return;
+    double room = (on->stress->allowed_degC - outcome->start_degC) / (part->tj_max_degC - 25);
+    outcome->avalanche_J = energy_J;
+    outcome->avalanche_limit_J = part->avalanche_energy_J * fmax(0, room);
+    outcome->corner = corner;
+    outcome->duration_s = 0;
+    if (id_A > part->avalanche_current_A) on->stress->remarks |= PF_REMARK_AVALANCHE_CURRENT;
+}
+
+/* A gate ramp that the part's own C_rss slows: the one waveform that depends on the part. */
+static pf_status try_slowed_start(trial *test, unsigned corner, const pf_corner *at)
+{
+    const evaluation *on = test->on;
+    pf_wave wave;
+    pf_response response;
+    pf_start start = pf_start_at(&on->plan->profile, test->slot->event, at, on->part->crss_F);
+    pf_status status = pf_wave_from_start(&start, pf_plan_hold_s(&on->plan->profile), &wave);
+    if (status != PF_OK) return status;
+    pf_respond_wave(&test->subject, &wave, &response);
+    take(test, corner, &response, &wave);
+    pf_wave_clear(&wave);
+    return PF_OK;
+}
+
+static pf_status try_wave(trial *test, unsigned corner, const pf_corner *at)
+{
+    pf_response response;
+    if (at->slow_gate && pf_is_stated(test->on->part->crss_F))
+        return try_slowed_start(test, corner, at);
+    if (at->slow_gate) test->on->stress->remarks |= PF_REMARK_NO_CRSS;
+    pf_respond_wave(&test->subject, &test->slot->wave[corner], &response);
+    take(test, corner, &response, &test->slot->wave[corner]);
+    return PF_OK;
+}
+
+static pf_status try_corner(trial *test, unsigned corner)
+{
+    const pf_profile *profile = &test->on->plan->profile;
+    pf_corner at;
+    pf_corner_at(&test->slot->corners, profile, corner, &at);
+    const double *value = at.value;
+    switch (test->slot->event) {
+    case PF_SHORT_AT_START:
+    case PF_SHORT_RUNNING:
+        try_rectangle(test, corner, value[PF_SUPPLY_VOLTAGE], pf_corner_fault_A(profile, &at),
+                      value[PF_FAULT_TIME]);
+        return PF_OK;
+    case PF_TRIP:
+        try_rectangle(test, corner, value[PF_SUPPLY_VOLTAGE], value[PF_TRIP_CURRENT],
+                      value[PF_TRIP_TIME]);
+        return PF_OK;
+    case PF_RETRY:
+        try_retry(test, corner, &at);
+        return PF_OK;
+    case PF_TURN_OFF:
+        try_turn_off(test, corner, &at);
+        return PF_OK;
+    default:
+        return try_wave(test, corner, &at);
+    }
+}
+
+/* What the corners said together. */
+static void conclude(trial *test)
+{
+    pf_outcome *outcome = test->outcome;
+    double required = test->on->plan->profile.value[PF_REQUIRED_MARGIN].max;
+    if (test->junction_unknown) {
+        outcome->peak_junction_degC = PF_NONE;
+        outcome->junction_cause = PF_CAUSE_NO_ZTH;
+    }
+    if (test->unknown != PF_CAUSE_NONE && !(outcome->soa_margin < required)) {
+        outcome->soa_margin = outcome->worst_time_s = PF_NONE;
+        outcome->cause = test->unknown;
+        outcome->corner = test->unknown_corner;
+    } else if (outcome->soa_margin == 0) {
+        outcome->cause = PF_CAUSE_HOT_START;
+    }
+}
+
+static const pf_outcome nothing_known = {
+    .soa_margin = __builtin_nan(""),
+    .start_degC = __builtin_nan(""),
+    .worst_time_s = __builtin_nan(""),
+    .peak_junction_degC = __builtin_nan(""),
+    .peak_current_A = __builtin_nan(""),
+    .peak_power_W = __builtin_nan(""),
+    .energy_J = __builtin_nan(""),
+    .duration_s = __builtin_nan(""),
+    .avalanche_J = __builtin_nan(""),
+    .avalanche_limit_J = __builtin_nan(""),
+};
+
+static void outcome_of_running(const evaluation *on, pf_outcome *outcome)
+{
+    outcome->start_degC = outcome->peak_junction_degC = on->running.junction_degC;
+    outcome->peak_current_A = on->running.share_A;
+    outcome->junction_cause = outcome->cause = on->running.cause;
+}
+
+/* Why an event cannot even be begun; PF_CAUSE_NONE when it can. */
+static pf_cause why_not(const evaluation *on, const pf_slot *slot, double start_degC)
+{
+    if (slot->event == PF_SUPPLY_STEP && !slot->wave) return PF_CAUSE_NO_LIMIT;
+    if (!pf_is_stated(on->stress->allowed_degC)) return PF_CAUSE_NO_TJ_MAX;
+    if (!pf_is_stated(start_degC)) return PF_CAUSE_NO_START;
+    return PF_CAUSE_NONE;
+}
+
+static pf_status evaluate_slot(const evaluation *on, size_t index)
+{
+    const pf_slot *slot = &on->plan->slot[index];
+    pf_outcome *outcome = &on->stress->outcome[index];
+    trial test = {.on = on, .slot = slot, .outcome = outcome};
+    pf_status status = PF_OK;
+    *outcome = nothing_known;
+    if (slot->event == PF_RUNNING) {
+        outcome_of_running(on, outcome);
+        return PF_OK;
+    }
+    outcome->start_degC = start_of(on, slot->event);
+    outcome->cause = outcome->junction_cause = why_not(on, slot, outcome->start_degC);
+    if (outcome->cause != PF_CAUSE_NONE) return PF_OK;
+    test.subject = pf_subject_of(on->scratch->model, outcome->start_degC,
+                                 on->plan->profile.extend_soa, on->scratch->sample);
+    for (unsigned i = 0; i < slot->corners.number && status == PF_OK; i++)
+        status = try_corner(&test, i);
+    if (slot->event != PF_TURN_OFF) conclude(&test);
+    return status;
+}
+
+/* The part's own numbers: the worst of its events'. */
+static void summarise(const pf_plan *plan, pf_stress *stress)
+{
+    stress->soa_margin = stress->peak_junction_degC = PF_NONE;
+    stress->limiting_slot = -1;
+    for (size_t i = 0; i < plan->count; i++) {
+        const pf_outcome *outcome = &stress->outcome[i];
+        stress->peak_junction_degC = fmax(stress->peak_junction_degC, outcome->peak_junction_degC);
+        if (!pf_is_stated(outcome->soa_margin)) continue;
+        if (stress->limiting_slot >= 0 && !(outcome->soa_margin < stress->soa_margin)) continue;
+        stress->soa_margin = outcome->soa_margin;
+        stress->limiting_slot = (int)i;
+    }
+}
+
+static pf_status prepare(evaluation *on)
+{
+    pf_stress *stress = on->stress;
+    pf_scratch *scratch = on->scratch;
+    on->running = pf_steady_state_of(&on->plan->profile, on->part);
+    *stress = (pf_stress){.count = on->plan->count};
+    stress->allowed_degC = pf_allowed_degC(&on->plan->profile, on->part);
+    stress->running_degC = on->running.junction_degC;
+    stress->conduction_loss_W = on->running.loss_W;
+    stress->running_cause = on->running.cause;
+    stress->rdson_cold_ohm = on->running.rdson.cold_ohm;
+    stress->rdson_drive_V = on->running.rdson.drive_V;
+    if (on->running.rdson.ratio_assumed) stress->remarks |= PF_REMARK_HOT_RATIO;
+    pf_status status = pf_grow((void **)&scratch->sample, &scratch->samples_room,
+                               on->plan->samples + 1, sizeof *scratch->sample);
+    if (status == PF_OK) status = pf_model_load(scratch->model, on->part);
+    if (status == PF_OK && pf_model_zth(scratch->model)->path == PF_JUNCTION_AMBIENT)
+        stress->remarks |= PF_REMARK_AMBIENT_ZTH;
+    return status;
+}
+
+pf_status pf_plan_evaluate(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
+                           pf_stress *stress)
+{
+    evaluation on = {.plan = plan, .part = part, .scratch = scratch, .stress = stress};
+    pf_status status = prepare(&on);
+    for (size_t i = 0; i < plan->count && status == PF_OK; i++)
+        status = evaluate_slot(&on, i);
+    summarise(plan, stress);
+    return status;
+}
+
+pf_scratch *pf_scratch_new(void)
+{
+    pf_scratch *scratch = pf_allocate(1, sizeof *scratch);
+    if (!scratch) return NULL;
+    scratch->model = pf_allocate(1, sizeof *scratch->model);
+    if (!scratch->model) {
+        pf_free(scratch);
+        return NULL;
+    }
+    pf_model_init(scratch->model);
+    return scratch;
+}
+
+void pf_scratch_free(pf_scratch *scratch)
+{
+    if (!scratch) return;
+    pf_model_clear(scratch->model);
+    pf_free(scratch->model);
+    pf_free(scratch->sample);
+    pf_free(scratch);
+}
