@@ -1,0 +1,10 @@
+# Tests of the physics: parts and profiles written as texts (support/bench.h), no file, no SQL.
+add_library(pf_test_support STATIC support/settings.c support/bench.c support/random_case.c)
+target_include_directories(pf_test_support PUBLIC ${CMAKE_CURRENT_SOURCE_DIR})
+target_link_libraries(pf_test_support PUBLIC pf_rank)
+
+set(PHYSICS pf_test_support)
+pf_test(test_numeric_curve SOURCES unit/test_numeric_curve.c LIBRARIES pf_numeric)
+pf_test(test_device_part SOURCES unit/test_device_part.c LIBRARIES ${PHYSICS})
+pf_test(test_device_curves SOURCES unit/test_device_curves.c LIBRARIES ${PHYSICS})
+pf_test(test_device_soa SOURCES unit/test_device_soa.c LIBRARIES ${PHYSICS})
