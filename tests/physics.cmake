@@ -8,3 +8,6 @@ pf_test(test_numeric_curve SOURCES unit/test_numeric_curve.c LIBRARIES pf_numeri
 pf_test(test_device_part SOURCES unit/test_device_part.c LIBRARIES ${PHYSICS})
 pf_test(test_device_curves SOURCES unit/test_device_curves.c LIBRARIES ${PHYSICS})
 pf_test(test_device_soa SOURCES unit/test_device_soa.c LIBRARIES ${PHYSICS})
+pf_test(test_stress_start_up SOURCES unit/test_stress_start_up.c LIBRARIES ${PHYSICS})
+pf_test(test_stress_stall SOURCES unit/test_stress_stall.c LIBRARIES ${PHYSICS})
+pf_test(test_stress_steady SOURCES unit/test_stress_steady.c LIBRARIES ${PHYSICS})
