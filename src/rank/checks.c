@@ -77,7 +77,8 @@ static void check_running(pf_assessment *to, int slot)
     const pf_stress *stress = &to->stress;
     add_limit(to, PF_CHECK_RUNNING, slot, stress->running_degC, stress->allowed_degC, NULL,
               stress->running_cause);
-    if (stress->running_cause == PF_CAUSE_RUNAWAY) to->check[to->check_count - 1].verdict = PF_FAIL;
+    if (stress->running_cause == PF_CAUSE_RUNAWAY)
+        to->check[to->check_count - 1].cause = PF_CAUSE_RUNAWAY;
 }
 
 static void check_margin(pf_assessment *to, int slot, double required)
