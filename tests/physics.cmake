@@ -14,3 +14,8 @@ pf_test(test_stress_steady SOURCES unit/test_stress_steady.c LIBRARIES ${PHYSICS
 pf_test(test_stress_events SOURCES unit/test_stress_events.c LIBRARIES ${PHYSICS})
 pf_test(test_stress_retry SOURCES unit/test_stress_retry.c LIBRARIES ${PHYSICS})
 pf_test(test_stress_unassessed SOURCES unit/test_stress_unassessed.c LIBRARIES ${PHYSICS})
+pf_test(test_stress_corners SOURCES unit/test_stress_corners.c LIBRARIES ${PHYSICS})
+pf_test(test_stress_profile SOURCES unit/test_stress_profile.c LIBRARIES ${PHYSICS})
+pf_test(test_rank_checks SOURCES unit/test_rank_checks.c LIBRARIES ${PHYSICS})
+pf_test(test_rank_order SOURCES unit/test_rank_order.c LIBRARIES ${PHYSICS})
+pf_test(test_rank_condition SOURCES unit/test_rank_condition.c LIBRARIES ${PHYSICS})
