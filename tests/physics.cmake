@@ -19,3 +19,8 @@ pf_test(test_stress_profile SOURCES unit/test_stress_profile.c LIBRARIES ${PHYSI
 pf_test(test_rank_checks SOURCES unit/test_rank_checks.c LIBRARIES ${PHYSICS})
 pf_test(test_rank_order SOURCES unit/test_rank_order.c LIBRARIES ${PHYSICS})
 pf_test(test_rank_condition SOURCES unit/test_rank_condition.c LIBRARIES ${PHYSICS})
+
+# Cross-checks with GSL, which nothing but tests needs.
+set(GSL_TESTS ${PHYSICS} PkgConfig::GSL)
+pf_test(test_cross_hot_spot SOURCES reference/test_cross_hot_spot.c reference/duhamel.c
+  LIBRARIES ${GSL_TESTS})
