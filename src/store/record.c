@@ -1,0 +1,237 @@
+/* record.c: reading a row into a part that is used again and again.
+**
+** Two passes over the row: the first counts what it needs, so that all of it fits one block of
+** memory that grows only while the largest part so far is met; the second copies.
+*/
+#include "store/record.h"
+#include "base/memory.h"
+#include "base/number.h"
+#include "store/curve_json.h"
+#include "store/packed.h"
+
+#include <math.h>
+#include <string.h>
+
+/* Columns of pf_record_select before the texts. */
+enum column {
+    COLUMN_ID,
+    COLUMN_NUMBER,
+    COLUMN_ENTRY,
+    COLUMN_WITHDRAWN,
+    COLUMN_CONTENT,
+    COLUMN_POLARITY,
+    COLUMN_RDSON,
+    COLUMN_CURVES,
+    COLUMN_PACKED,
+    COLUMN_AUTHOR,
+    COLUMN_TIME,
+    COLUMN_VERDICT,
+    COLUMN_TEXTS
+};
+
+void pf_record_select(const pf_store *store, const char *table, const char *id, const char *reviews,
+                      pf_buffer *sql)
+{
+    size_t texts, ratings;
+    const pf_text_field *text = pf_text_fields(&texts);
+    const pf_rating_field *rating = pf_rating_fields(&ratings);
+    pf_buffer_print(sql,
+                    "SELECT p.%s AS part_id, p.number AS number, p.entry, p.withdrawn, p.content, "
+                    "p.polarity, p.rdson, p.curves, c.packed, e.author, e.time, "
+                    "(SELECT r.verdict FROM review r WHERE r.part = p.%s AND r.number = p.number "
+                    "AND %s ORDER BY r.entry DESC LIMIT 1) AS verdict",
+                    id, id, reviews);
+    for (size_t i = 0; i < texts; i++)
+        pf_buffer_print(sql, ", %s AS %s", store->text_missing[i] ? "NULL" : text[i].name,
+                        text[i].name);
+    for (size_t i = 0; i < ratings; i++)
+        pf_buffer_print(sql, ", %s AS %s", store->rating_missing[i] ? "NULL" : rating[i].name,
+                        rating[i].name);
+    pf_buffer_print(sql,
+                    " FROM %s p CROSS JOIN entry e ON e.id = p.entry "
+                    "LEFT JOIN curve c ON c.id = p.curves",
+                    table);
+}
+
+/* One block of memory handed out piece by piece. */
+typedef struct arena {
+    char *at;
+} arena;
+
+static void *take(arena *from, size_t bytes)
+{
+    void *piece = from->at;
+    from->at += bytes;
+    return piece;
+}
+
+static char *take_text(arena *from, sqlite3_stmt *row, int column)
+{
+    size_t length = (size_t)sqlite3_column_bytes(row, column);
+    const void *text = sqlite3_column_blob(row, column);
+    char *copy = take(from, length + 1);
+    if (length) memcpy(copy, text, length);
+    copy[length] = '\0';
+    return copy;
+}
+
+/* Bytes that a text column needs; 0 for NULL. *sound is cleared where it is no text. */
+static size_t text_room(sqlite3_stmt *row, int column, bool *sound)
+{
+    int type = sqlite3_column_type(row, column);
+    if (type == SQLITE_NULL) return 0;
+    size_t length = (size_t)sqlite3_column_bytes(row, column);
+    const void *text = sqlite3_column_blob(row, column);
+    if (type != SQLITE_TEXT || (length && (!text || memchr(text, 0, length)))) *sound = false;
+    return length + 1;
+}
+
+static size_t items_room(const pf_packed_counts *counts)
+{
+    size_t room = counts->soa * sizeof(pf_soa_point);
+    for (int path = 0; path < PF_PATH_COUNT; path++)
+        room += counts->point[path] * sizeof(pf_zth_point) +
+                counts->pair[path] * sizeof(pf_foster_pair);
+    return room;
+}
+
+static void take_curves(arena *from, const pf_packed_counts *counts, pf_part *part)
+{
+    part->soa = counts->soa ? take(from, counts->soa * sizeof *part->soa) : NULL;
+    part->soa_count = 0;
+    for (int path = 0; path < PF_PATH_COUNT; path++) {
+        size_t points = counts->point[path], pairs = counts->pair[path];
+        part->thermal[path] =
+            (pf_thermal_curve){.point = points ? take(from, points * sizeof(pf_zth_point)) : NULL,
+                               .pair = pairs ? take(from, pairs * sizeof(pf_foster_pair)) : NULL};
+    }
+}
+
+static bool read_polarity(sqlite3_stmt *row, pf_polarity *polarity)
+{
+    const char *text = (const char *)sqlite3_column_text(row, COLUMN_POLARITY);
+    *polarity = !text ? PF_POLARITY_NONE : *text == 'N' ? PF_N_CHANNEL : PF_P_CHANNEL;
+    return text && (strcmp(text, "N") == 0 || strcmp(text, "P") == 0);
+}
+
+static bool read_review(sqlite3_stmt *row, pf_review_state *state)
+{
+    *state = PF_UNREVIEWED;
+    const char *text = (const char *)sqlite3_column_text(row, COLUMN_VERDICT);
+    if (!text) return true;
+    *state = *text == 'a' ? PF_ACCEPTED : PF_QUESTIONED;
+    return strcmp(text, "accept") == 0 || strcmp(text, "question") == 0;
+}
+
+static bool read_rdson(sqlite3_stmt *row, pf_part *part)
+{
+    const char *json = (const char *)sqlite3_column_text(row, COLUMN_RDSON);
+    part->rdson_count = 0;
+    return !json || pf_rdson_read(json, part);
+}
+
+static bool read_ratings(sqlite3_stmt *row, int column, pf_part *part)
+{
+    size_t count;
+    const pf_rating_field *field = pf_rating_fields(&count);
+    for (size_t i = 0; i < count; i++, column++) {
+        int type = sqlite3_column_type(row, column);
+        double value = type == SQLITE_NULL ? PF_NONE : sqlite3_column_double(row, column);
+        *pf_part_rating(part, &field[i]) = value;
+        if (type != SQLITE_NULL && !(value >= field[i].lowest && value <= field[i].highest))
+            return false;
+    }
+    return true;
+}
+
+static void read_texts(sqlite3_stmt *row, arena *from, pf_part *part)
+{
+    size_t count;
+    const pf_text_field *field = pf_text_fields(&count);
+    for (size_t i = 0; i < count; i++) {
+        int column = COLUMN_TEXTS + (int)i;
+        bool stated = sqlite3_column_type(row, column) != SQLITE_NULL;
+        *pf_part_text(part, &field[i]) = stated ? take_text(from, row, column) : NULL;
+    }
+}
+
+/* Room for everything that the row says; false where its texts or curves are none. */
+static bool measure(sqlite3_stmt *row, size_t texts, pf_packed_counts *counts, size_t *room)
+{
+    bool sound = true;
+    const void *packed = sqlite3_column_blob(row, COLUMN_PACKED);
+    size_t length = (size_t)sqlite3_column_bytes(row, COLUMN_PACKED);
+    if (!pf_packed_count(packed, length, counts)) return false;
+    *room = items_room(counts);
+    for (size_t i = 0; i < texts; i++)
+        *room += text_room(row, COLUMN_TEXTS + (int)i, &sound);
+    size_t author = text_room(row, COLUMN_AUTHOR, &sound),
+           time = text_room(row, COLUMN_TIME, &sound);
+    *room += author + time;
+    return sound && author && time &&
+           sqlite3_column_bytes(row, COLUMN_CONTENT) == PF_DIGEST_BYTES &&
+           (sqlite3_column_type(row, COLUMN_CURVES) == SQLITE_NULL) == (length == 0);
+}
+
+static void read_extra(sqlite3_stmt *row, pf_record_extra *extra)
+{
+    extra->withdrawn = sqlite3_column_int(row, COLUMN_WITHDRAWN) != 0;
+    extra->content = sqlite3_column_blob(row, COLUMN_CONTENT);
+    extra->curves = sqlite3_column_int64(row, COLUMN_CURVES);
+    extra->packed = sqlite3_column_blob(row, COLUMN_PACKED);
+    extra->packed_bytes = (size_t)sqlite3_column_bytes(row, COLUMN_PACKED);
+}
+
+static bool fill(sqlite3_stmt *row, size_t texts, const pf_packed_counts *counts,
+                 pf_stored_part *stored)
+{
+    arena memory = {stored->memory};
+    pf_part *part = &stored->part;
+    pf_revision_facts *facts = &stored->facts;
+    take_curves(&memory, counts, part);
+    pf_curves_unpack(sqlite3_column_blob(row, COLUMN_PACKED),
+                     (size_t)sqlite3_column_bytes(row, COLUMN_PACKED), part);
+    read_texts(row, &memory, part);
+    facts->part_id = sqlite3_column_int64(row, COLUMN_ID);
+    facts->number = sqlite3_column_int64(row, COLUMN_NUMBER);
+    facts->entry = sqlite3_column_int64(row, COLUMN_ENTRY);
+    facts->author = take_text(&memory, row, COLUMN_AUTHOR);
+    facts->time = take_text(&memory, row, COLUMN_TIME);
+    return part->name && read_polarity(row, &part->polarity) && read_rdson(row, part) &&
+           read_ratings(row, COLUMN_TEXTS + (int)texts, part) && read_review(row, &facts->review);
+}
+
+pf_status pf_record_read(pf_store *store, sqlite3_stmt *row, pf_stored_part *stored,
+                         pf_record_extra *extra, pf_error *error)
+{
+    size_t room, texts = store->order.texts;
+    pf_packed_counts counts;
+    bool sound = measure(row, texts, &counts, &room);
+    if (sound && pf_grow((void **)&stored->memory, &stored->room, room + 1, 1) != PF_OK)
+        return pf_store_no_memory(store, error);
+    if (!sound || !fill(row, texts, &counts, stored)) {
+        char what[64];
+        sqlite3_snprintf(sizeof what, what, "part %lld says what cannot be",
+                         sqlite3_column_int64(row, COLUMN_ID));
+        return pf_store_damaged(store, error, what);
+    }
+    if (extra) read_extra(row, extra);
+    return PF_OK;
+}
+
+void pf_stored_part_init(pf_stored_part *stored)
+{
+    memset(stored, 0, sizeof *stored);
+    pf_part_init(&stored->part);
+}
+
+void pf_stored_part_clear(pf_stored_part *stored)
+{
+    pf_free(stored->memory);
+    pf_stored_part_init(stored);
+}
+
+const char *pf_review_text(pf_review_state state)
+{
+    return state == PF_ACCEPTED ? "accepted" : state == PF_QUESTIONED ? "questioned" : "unreviewed";
+}
