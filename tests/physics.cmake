@@ -24,3 +24,6 @@ pf_test(test_rank_condition SOURCES unit/test_rank_condition.c LIBRARIES ${PHYSI
 set(GSL_TESTS ${PHYSICS} PkgConfig::GSL)
 pf_test(test_cross_hot_spot SOURCES reference/test_cross_hot_spot.c reference/duhamel.c
   LIBRARIES ${GSL_TESTS})
+pf_test(test_cross_start_up SOURCES reference/test_cross_start_up.c LIBRARIES ${GSL_TESTS})
+pf_test(test_cross_junction SOURCES reference/test_cross_junction.c LIBRARIES ${GSL_TESTS})
+pf_test(test_cross_closed SOURCES reference/test_cross_closed.c LIBRARIES ${GSL_TESTS})
