@@ -15,6 +15,9 @@ typedef struct pf_part_change {
     uint64_t ratings_given;
     bool polarity_given, rdson_given, soa_given;
     bool thermal_given[PF_PATH_COUNT];
+    bool makerless; /* some file of the run names it without its maker */
+    bool refused; /* a row of it was refused and the good rows of the run are kept: not to be stored
+                   */
     char *raw_curves; /* curves as they stood in the file where they were repaired, else NULL */
     char *file;       /* where the part stands first, for messages */
     size_t line;

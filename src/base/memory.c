@@ -39,6 +39,11 @@ pf_status pf_text_copy(char **out, const char *text)
     return text ? pf_text_copy_n(out, text, strlen(text)) : PF_OK;
 }
 
+void *pf_reallocate(void *memory, size_t size)
+{
+    return realloc(memory, size ? size : 1);
+}
+
 void pf_free(void *memory)
 {
     free(memory);

@@ -18,6 +18,9 @@ pf_status pf_text_copy(char **out, const char *text) PF_MUST_USE;
 /* The same of the first length bytes. */
 pf_status pf_text_copy_n(char **out, const char *text, size_t length) PF_MUST_USE;
 
+/* Makes a block (NULL: a new one) size bytes long; NULL leaves it as it was. */
+void *pf_reallocate(void *memory, size_t size) PF_MUST_USE;
+
 void pf_free(void *memory);
 
 #endif
