@@ -26,9 +26,8 @@ struct pf_curves {
     uint32_t *of; /* change * PF_PATH_COUNT + path to gather + 1 */
     size_t of_capacity;
     size_t last;        /* the gather of the row before */
-    char last_key[256]; /* its part, a NUL, its maker */
+    char last_key[256]; /* its cells that name part, maker and path, a NUL behind each */
     size_t last_length; /* 0: none */
-    pf_thermal_path last_path;
     char last_time[32]; /* the text of the pulse width of the row before, and its value */
     size_t last_time_length;
     double last_time_s;
@@ -89,24 +88,44 @@ static pf_status gather_of(pf_curves *curves, size_t change, pf_thermal_path pat
     return PF_OK;
 }
 
-static bool is_last(const pf_curves *curves, pf_slice name, pf_slice maker, pf_thermal_path path)
+/* The cells that name the part and path of the row at hand: up to three, empty where not there. */
+static size_t key_cells(const pf_reader *reader, pf_slice key[3])
 {
-    return curves->last_length == name.length + 1 + maker.length && curves->last_path == path &&
-           memcmp(curves->last_key, name.text, name.length) == 0 &&
-           curves->last_key[name.length] == '\0' &&
-           memcmp(curves->last_key + name.length + 1, maker.text, maker.length) == 0;
+    const int column[3] = {reader->part_column, reader->maker_column, reader->curves->path};
+    size_t length = 0;
+    for (size_t i = 0; i < 3; i++) {
+        key[i] = (pf_slice){"", 0};
+        if (column[i] >= 0)
+            key[i] =
+                (pf_slice){reader->row->cell[column[i]].text, reader->row->cell[column[i]].length};
+        length += key[i].length + 1;
+    }
+    return length;
 }
 
-static void remember(pf_curves *curves, pf_slice name, pf_slice maker, pf_thermal_path path)
+/* Whether the row at hand names the part and path of the row before, letter by letter. */
+static bool is_last(const pf_reader *reader)
 {
-    size_t length = name.length + 1 + maker.length;
+    pf_slice key[3];
+    const pf_curves *curves = reader->curves;
+    if (key_cells(reader, key) != curves->last_length) return false;
+    const char *at = curves->last_key;
+    for (size_t i = 0; i < 3; at += key[i].length + 1, i++)
+        if (memcmp(at, key[i].text, key[i].length) != 0 || at[key[i].length] != '\0') return false;
+    return true;
+}
+
+static void remember(const pf_reader *reader)
+{
+    pf_slice key[3];
+    pf_curves *curves = reader->curves;
     curves->last_length = 0;
+    size_t length = key_cells(reader, key);
     if (length > sizeof curves->last_key) return;
-    memcpy(curves->last_key, name.text, name.length);
-    curves->last_key[name.length] = '\0';
-    memcpy(curves->last_key + name.length + 1, maker.text, maker.length);
+    char *at = curves->last_key;
+    for (size_t i = 0; i < 3; at += key[i].length + 1, i++)
+        memcpy(at, key[i].text, key[i].length + 1);
     curves->last_length = length;
-    curves->last_path = path;
 }
 
 /* Sets curves->last to the row's part. *found false: refused, and said. */
@@ -116,7 +135,7 @@ static pf_status find_part(pf_reader *reader, pf_slice name, pf_slice maker, pf_
     size_t change;
     pf_curves *curves = reader->curves;
     *found = true;
-    if (is_last(curves, name, maker, path)) return PF_OK;
+    curves->last_length = 0;
     pf_status status = pf_registry_find(&reader->registry, reader->changes, name, maker, &change);
     if (status == PF_NOT_FOUND) {
         pf_fault fault;
@@ -133,7 +152,6 @@ static pf_status find_part(pf_reader *reader, pf_slice name, pf_slice maker, pf_
         item->line = reader->row->line;
     }
     if (status == PF_OK) status = gather_of(curves, change, path, reader->row->line, &curves->last);
-    if (status == PF_OK) remember(curves, name, maker, path);
     return status;
 }
 
@@ -335,18 +353,27 @@ pf_status pf_curves_spoil(pf_reader *reader, pf_slice name, pf_slice maker)
     return status;
 }
 
-pf_status pf_curves_row(pf_reader *reader)
+/* Finds the part that the row at hand belongs to. */
+static pf_status settle_part(pf_reader *reader, bool *found)
 {
     pf_slice name, maker;
     pf_thermal_path path;
-    bool found = true;
-    pf_curves *curves = reader->curves;
     pf_status status = pf_reader_names(reader, &name, &maker);
-    if (status == PF_OK) status = pf_reader_path(reader, curves->path, &path);
+    if (status == PF_OK) status = pf_reader_path(reader, reader->curves->path, &path);
+    *found = name.length > 0;
+    if (status == PF_OK && *found) status = find_part(reader, name, maker, path, found);
+    if (status == PF_OK && *found && !reader->row_refused) remember(reader);
+    return status;
+}
+
+pf_status pf_curves_row(pf_reader *reader)
+{
+    pf_curves *curves = reader->curves;
+    bool found = true;
+    pf_status status = PF_OK;
+    if (!is_last(reader)) status = settle_part(reader, &found);
     if (status != PF_OK) return status;
-    if (name.length > 0) status = find_part(reader, name, maker, path, &found);
-    if (status != PF_OK) return status;
-    if (name.length == 0 || !found) {
+    if (!found) {
         if (reader->options->keep_good) reader->file_refused = true; /* whose curve is it? */
         return PF_OK;
     }

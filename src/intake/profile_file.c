@@ -294,6 +294,9 @@ static void on_finding(void *context, pf_parameter parameter, const char *wrong,
     profile_reading *reading = context;
     pf_fault fault;
     bool known = parameter < PF_PARAMETER_COUNT;
+    if (known && reading->line[parameter] > 0 && !reading->profile->stated[parameter] &&
+        !(parameter == PF_RETRY_COUNT))
+        return; /* its row is there and was refused */
     size_t line =
         known && reading->line[parameter] ? reading->line[parameter] : reading->sheet->last_line;
     const char *name = known ? pf_parameter_facts()[parameter].name : NULL;

@@ -118,8 +118,9 @@ static void on_cell(void *bytes, size_t length, void *context)
         return;
     }
     size_t needed = table->text_length + length + 1;
-    table->status = pf_grow((void **)&table->text, &table->text_capacity, needed, 1);
-    if (table->status == PF_OK)
+    if (needed > table->text_capacity)
+        table->status = pf_grow((void **)&table->text, &table->text_capacity, needed, 1);
+    if (table->status == PF_OK && table->count == table->cell_capacity)
         table->status = pf_grow((void **)&table->cell, &table->cell_capacity, table->count + 1,
                                 sizeof *table->cell);
     if (table->status != PF_OK) return;

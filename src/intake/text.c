@@ -20,8 +20,15 @@ size_t pf_blank_length(const char *text, size_t length)
     return 0;
 }
 
+static bool is_plain(char c)
+{
+    return c > ' ' && c < 0x7F;
+}
+
 pf_slice pf_trim(pf_slice slice)
 {
+    size_t n = slice.length;
+    if (n > 0 && is_plain(slice.text[0]) && is_plain(slice.text[n - 1])) return slice;
     size_t blank;
     while ((blank = pf_blank_length(slice.text, slice.length)) > 0) {
         slice.text += blank;

@@ -117,8 +117,8 @@ static pf_status settle_unit(pf_slice rest, const pf_value_rule *rule, double *f
         *factor = rule->factor != 0 ? rule->factor : 1;
         if (rule->factor == 0 && pf_quantity_needs_unit(rule->quantity)) {
             char right[120];
-            snprintf(right, sizeof right, "%s, or a unit in the header such as [%s]",
-                     example(rule->quantity), strchr(example(rule->quantity), ' ') + 1);
+            snprintf(right, sizeof right, "%s, or the unit in the header or the unit column",
+                     example(rule->quantity));
             return pf_fault_set(fault, right, "a number without a unit");
         }
         return PF_OK;
