@@ -67,11 +67,12 @@ static double slow_read(const char *text, size_t length)
     return value;
 }
 
+/* Powers of ten that a double holds exactly. */
+static const double ten[] = {1e0,  1e1,  1e2,  1e3,  1e4,  1e5,  1e6,  1e7,  1e8,  1e9,  1e10, 1e11,
+                             1e12, 1e13, 1e14, 1e15, 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22};
+
 size_t pf_number_read(const char *text, size_t length, double *value)
 {
-    static const double ten[] = {1e0,  1e1,  1e2,  1e3,  1e4,  1e5,  1e6,  1e7,
-                                 1e8,  1e9,  1e10, 1e11, 1e12, 1e13, 1e14, 1e15,
-                                 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22};
     decimal number = {0};
     size_t at = 0;
     if (at < length && (text[at] == '-' || text[at] == '+')) number.negative = text[at++] == '-';
@@ -103,10 +104,63 @@ static void restore_point(char *text)
     if (foreign > 1) memmove(mark + 1, mark + foreign, strlen(mark + foreign) + 1);
 }
 
+/* The shortest decimal of a value above 0, as digits and a power of ten, where the fast path of
+** reading proves that it reads back unchanged; false where it does not. 15 digits never fit two
+** decimals that are the same double, so that printf would find the same ones. */
+static bool shortest(double value, uint64_t *digits, int *exponent)
+{
+    if (!(value >= 1e-22 && value < 1e15)) return false;
+    for (int places = 0; places <= 22; places++) {
+        double scaled = nearbyint(value * ten[places]);
+        if (scaled >= 1e15) return false;
+        if (scaled / ten[places] != value) continue;
+        *digits = (uint64_t)scaled;
+        *exponent = -places;
+        return true;
+    }
+    return false;
+}
+
+/* digits * 10^exponent in the format of "%.*g" with at least 6 digits. */
+static size_t print_decimal(char *text, uint64_t digits, int exponent)
+{
+    char digit[24];
+    int count = 0, at = 0;
+    for (; digits % 10 == 0; digits /= 10)
+        exponent++;
+    for (; digits; digits /= 10)
+        digit[count++] = (char)('0' + digits % 10); /* the last one first */
+    int power = count - 1 + exponent;
+    if (power < -4 || power >= (count > 6 ? count : 6)) {
+        text[at++] = digit[--count];
+        if (count) text[at++] = '.';
+        while (count)
+            text[at++] = digit[--count];
+        return (size_t)at + (size_t)snprintf(text + at, 8, "e%+03d", power);
+    }
+    if (power < 0) text[at++] = '0', text[at++] = '.';
+    for (int zeros = power; zeros < -1; zeros++)
+        text[at++] = '0';
+    for (int place = power; count; place--) {
+        text[at++] = digit[--count];
+        if (place == 0 && count) text[at++] = '.';
+    }
+    for (int zeros = exponent; zeros > 0; zeros--)
+        text[at++] = '0';
+    text[at] = '\0';
+    return (size_t)at;
+}
+
 size_t pf_number_print(char text[PF_NUMBER_ROOM], double value, int digits)
 {
+    uint64_t whole;
+    int exponent;
     text[0] = '\0';
     if (!isfinite(value)) return 0;
+    if (!digits && shortest(fabs(value), &whole, &exponent)) {
+        text[0] = '-';
+        return (value < 0) + print_decimal(text + (value < 0), whole, exponent);
+    }
     double back = 0;
     for (int use = digits ? digits : 6; use <= 17; use++) {
         snprintf(text, PF_NUMBER_ROOM, "%.*g", use, value);
