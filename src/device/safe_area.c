@@ -50,39 +50,47 @@ static double last_slope(const pf_soa_column *column)
 }
 
 /* E(V, t) of equation (6): whichever falls faster of Zth and the slope in time. */
-static double extended(const pf_soa_column *column, double log_time, double log_zth_ratio)
+static double extended(const pf_soa_column *column, double log_over, double log_zth_ratio)
 {
     size_t last = column->family->pulses - 1;
-    double over = log_time - column->family->curve[last].log_pulse;
-    double slope = last_slope(column) * over;
+    double slope = last_slope(column) * log_over;
     double fall = log_zth_ratio < slope ? log_zth_ratio : slope;
     if (!pf_is_stated(log_zth_ratio) || !pf_is_stated(slope)) return PF_NONE;
     return column->log_i[last] + fmin(0, fall);
 }
 
-static double beyond_longest(const pf_soa_column *column, double log_time, pf_soa_beyond beyond)
+static double beyond_longest(const pf_soa_column *column, double log_over, pf_soa_beyond beyond)
 {
     const pf_soa_family *family = column->family;
     if (family->pulses == 0) return column->log_dc;
     double longest = column->log_i[family->pulses - 1];
     if (!family->dc)
-        return beyond.extend ? extended(column, log_time, beyond.log_zth_ratio) : PF_NONE;
+        return beyond.extend ? extended(column, log_over, beyond.log_zth_ratio) : PF_NONE;
     if (!pf_is_stated(column->log_dc) || !pf_is_stated(longest)) return PF_NONE;
     double least = fmin(column->log_dc, longest);
-    if (!pf_is_stated(beyond.log_zth_ratio)) return least;
-    double between = extended(column, log_time, beyond.log_zth_ratio);
-    return pf_is_stated(between) ? fmax(between, least) : least;
+    double between = extended(column, log_over, beyond.log_zth_ratio);
+    return between > least ? between : least;
 }
 
-double pf_soa_log_current(const pf_soa_column *column, double log_time, pf_soa_beyond beyond)
+pf_soa_place pf_soa_place_of(const pf_soa_family *family, double log_time)
 {
-    const pf_soa_curve *curve = column->family->curve;
-    size_t right = 0, pulses = column->family->pulses;
-    while (right < pulses && curve[right].log_pulse < log_time - SAME_TIME)
+    const pf_soa_curve *curve = family->curve;
+    size_t right = 0;
+    while (right < family->pulses && curve[right].log_pulse < log_time - SAME_TIME)
         right++;
-    if (right == pulses) return beyond_longest(column, log_time, beyond);
-    if (right == 0 || curve[right].log_pulse <= log_time + SAME_TIME) return column->log_i[right];
-    double slope = pf_slope(curve[right - 1].log_pulse, column->log_i[right - 1],
-                            curve[right].log_pulse, column->log_i[right]);
-    return column->log_i[right] + slope * (log_time - curve[right].log_pulse);
+    if (right == family->pulses)
+        return (pf_soa_place){right, right, 0, log_time - pf_soa_longest_log(family)};
+    if (right == 0 || curve[right].log_pulse <= log_time + SAME_TIME)
+        return (pf_soa_place){right, right, 0, 0};
+    double back = curve[right].log_pulse - log_time;
+    double whole = curve[right].log_pulse - curve[right - 1].log_pulse;
+    return (pf_soa_place){right - 1, right, back / whole, 0};
+}
+
+double pf_soa_log_current(const pf_soa_column *column, pf_soa_place place, pf_soa_beyond beyond)
+{
+    if (place.right == column->family->pulses)
+        return beyond_longest(column, place.log_over, beyond);
+    double right = column->log_i[place.right];
+    return right + place.share * (column->log_i[place.left] - right);
 }

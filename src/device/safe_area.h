@@ -42,8 +42,8 @@ typedef struct pf_soa_column {
 } pf_soa_column;
 
 /* What is beyond the longest finite curve: how Zth grows from there, and whether the profile lets
-*it
-** be extended without a DC line. */
+ *it
+ ** be extended without a DC line. */
 typedef struct pf_soa_beyond {
     double log_zth_ratio; /* ln (Z(t_m)/Z(t)), <= 0; NaN where no Zth is stated */
     bool extend;
@@ -52,10 +52,22 @@ typedef struct pf_soa_beyond {
 /* Reads every curve of the family at a voltage >= 0 given with its logarithm. */
 void pf_soa_column_at(const pf_soa_family *family, double log_vds, pf_soa_column *column);
 
-/* ln of the current allowed for a pulse of exp(log_time); NaN where the sheet does not say.
+/* Where a pulse width lies between the curves of a family: right of left by share of the way back.
+** Found once for a grid of times, read at every voltage. */
+typedef struct pf_soa_place {
+    size_t left,
+        right; /* the same where nothing is to be interpolated; right = pulses: beyond all */
+    double share;
+    double log_over; /* beyond the longest: ln (time/longest); -infinity where there is no finite
+                        curve */
+} pf_soa_place;
+
+pf_soa_place pf_soa_place_of(const pf_soa_family *family, double log_time);
+
+/* ln of the current allowed at a place; NaN where the sheet does not say.
 ** Equations (4) to (6) of docs/methods.md; interpolation in time as in TI SLUAAO2 and common
 *practice. */
-double pf_soa_log_current(const pf_soa_column *column, double log_time, pf_soa_beyond beyond);
+double pf_soa_log_current(const pf_soa_column *column, pf_soa_place place, pf_soa_beyond beyond);
 
 /* The longest finite pulse as a logarithm; -infinity where there is none. */
 double pf_soa_longest_log(const pf_soa_family *family);

@@ -11,8 +11,8 @@
 #include <stddef.h>
 
 /* ln y at ln x. log_x strictly rising, count >= 1. Outside the points: the value of the nearest
-*end.
-** O(count) from the left: curves of data sheets have few points. */
+ *end.
+ ** O(count) from the left: curves of data sheets have few points. */
 double pf_curve_log_at(const double *log_x, const double *log_y, size_t count, double at);
 
 /* Slope of the straight line through two points; 0 for a vertical one. */

@@ -29,8 +29,6 @@ typedef struct trial {
     pf_outcome *outcome;
     pf_subject subject;
     bool junction_unknown; /* at some corner */
-    pf_cause unknown;      /* at some corner, why dT_hot is not known */
-    unsigned unknown_corner;
 } trial;
 
 static double lower_of(double limit, double other)
@@ -64,36 +62,28 @@ static double margin_of(const trial *test, double hot_rise_K)
     return hot_rise_K > 0 ? room / hot_rise_K : INFINITY;
 }
 
-static void note_corner(trial *test, unsigned corner, double margin, double worst_s,
-                        const pf_wave *scalars)
-{
-    pf_outcome *outcome = test->outcome;
-    if (pf_is_stated(outcome->soa_margin) && !(margin < outcome->soa_margin)) return;
-    outcome->soa_margin = margin;
-    outcome->corner = corner;
-    outcome->worst_time_s = worst_s;
-    outcome->peak_power_W = scalars->peak_power_W;
-    outcome->energy_J = scalars->energy_J;
-    outcome->duration_s = scalars->duration_s;
-}
-
-/* Takes the response of one corner into the outcome. */
-static void take(trial *test, unsigned corner, const pf_response *response, const pf_wave *scalars)
+/* Takes the response of one corner, or the worst of several, into the outcome. What could not be
+** assessed at one corner leaves the event unassessed. */
+static void take(trial *test, unsigned corner, const pf_response *response, const pf_wave *wave)
 {
     pf_outcome *outcome = test->outcome;
     double junction = outcome->start_degC + response->junction_rise_K;
+    bool hot = outcome->start_degC >= test->on->stress->allowed_degC;
     test->on->stress->remarks |= response->remarks;
-    outcome->peak_current_A = fmax(outcome->peak_current_A, scalars->peak_current_A);
     if (!pf_is_stated(junction)) test->junction_unknown = true;
     outcome->peak_junction_degC = fmax(outcome->peak_junction_degC, junction);
+    if (outcome->cause != PF_CAUSE_NONE) return;
     double margin = margin_of(test, response->hot_rise_K);
-    bool hot = outcome->start_degC >= test->on->stress->allowed_degC;
-    if (pf_is_stated(response->hot_rise_K) || hot) {
-        note_corner(test, corner, margin, response->worst_s, scalars);
-    } else if (test->unknown == PF_CAUSE_NONE) {
-        test->unknown = response->cause;
-        test->unknown_corner = corner;
-    }
+    if (!hot && response->cause != PF_CAUSE_NONE)
+        outcome->cause = response->cause;
+    else if (margin >= outcome->soa_margin)
+        return;
+    outcome->soa_margin = outcome->cause == PF_CAUSE_NONE ? margin : PF_NONE;
+    outcome->corner = corner;
+    outcome->worst_time_s = response->worst_s;
+    outcome->peak_power_W = wave->peak_power_W;
+    outcome->energy_J = wave->energy_J;
+    outcome->duration_s = wave->duration_s;
 }
 
 static pf_wave rectangle_scalars(double vds_V, double id_A, double time_s)
@@ -109,6 +99,7 @@ static void try_rectangle(trial *test, unsigned corner, double vds_V, double id_
     pf_response response;
     pf_wave scalars = rectangle_scalars(vds_V, id_A, time_s);
     pf_respond_rectangle(&test->subject, vds_V, id_A, time_s, &response);
+    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, id_A);
     take(test, corner, &response, &scalars);
 }
 
@@ -136,6 +127,7 @@ static void try_retry(trial *test, unsigned corner, const pf_corner *at)
     pf_response response;
     pf_wave scalars = rectangle_scalars(vds_V, id_A, on_s);
     pf_respond_rectangle(&test->subject, vds_V, id_A, on_s, &response);
+    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, id_A);
     double earlier = pf_train_zth(test->subject.zth, on_s, interval_s, count) +
                      case_warming(test, at, interval_s, count) * on_s / interval_s;
     if (!pf_is_stated(earlier) && response.cause == PF_CAUSE_NONE)
@@ -167,75 +159,84 @@ static void try_turn_off(trial *test, unsigned corner, const pf_corner *at)
     if (id_A > part->avalanche_current_A) on->stress->remarks |= PF_REMARK_AVALANCHE_CURRENT;
 }
 
-/* A gate ramp that the part's own C_rss slows: the one waveform that depends on the part. */
-static pf_status try_slowed_start(trial *test, unsigned corner, const pf_corner *at)
+static void take_waves(trial *test, const pf_waves *waves)
+{
+    pf_response response;
+    pf_respond_waves(&test->subject, waves, &response);
+    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, waves->peak_current_A);
+    take(test, response.corner, &response, &waves->wave[response.corner]);
+}
+
+/* Starts of which the part's own C_rss slows the gate ramp: the one waveform that knows the part.
+ */
+static pf_status try_slowed_starts(trial *test)
 {
     const evaluation *on = test->on;
-    pf_wave wave;
-    pf_response response;
-    pf_start start = pf_start_at(&on->plan->profile, test->slot->event, at, on->part->crss_F);
-    pf_status status = pf_wave_from_start(&start, pf_plan_hold_s(&on->plan->profile), &wave);
+    pf_waves waves;
+    pf_status status = pf_plan_starts(&on->plan->profile, test->slot, on->part->crss_F, &waves);
     if (status != PF_OK) return status;
-    pf_respond_wave(&test->subject, &wave, &response);
-    take(test, corner, &response, &wave);
-    pf_wave_clear(&wave);
-    return PF_OK;
+    status = pf_scratch_reserve(on->scratch, waves.samples);
+    test->subject.sample = on->scratch->sample;
+    if (status == PF_OK) take_waves(test, &waves);
+    pf_waves_clear(&waves);
+    return status;
 }
 
-static pf_status try_wave(trial *test, unsigned corner, const pf_corner *at)
+static pf_status try_waves(trial *test)
 {
-    pf_response response;
-    if (at->slow_gate && pf_is_stated(test->on->part->crss_F))
-        return try_slowed_start(test, corner, at);
-    if (at->slow_gate) test->on->stress->remarks |= PF_REMARK_NO_CRSS;
-    pf_respond_wave(&test->subject, &test->slot->wave[corner], &response);
-    take(test, corner, &response, &test->slot->wave[corner]);
+    bool ramp = test->slot->corners.gate_bit >= 0;
+    if (ramp && pf_is_stated(test->on->part->crss_F)) return try_slowed_starts(test);
+    if (ramp) test->on->stress->remarks |= PF_REMARK_NO_CRSS;
+    take_waves(test, &test->slot->waves);
     return PF_OK;
 }
 
-static pf_status try_corner(trial *test, unsigned corner)
+static void try_corner(trial *test, unsigned corner)
 {
     const pf_profile *profile = &test->on->plan->profile;
     pf_corner at;
     pf_corner_at(&test->slot->corners, profile, corner, &at);
     const double *value = at.value;
     switch (test->slot->event) {
-    case PF_SHORT_AT_START:
-    case PF_SHORT_RUNNING:
-        try_rectangle(test, corner, value[PF_SUPPLY_VOLTAGE], pf_corner_fault_A(profile, &at),
-                      value[PF_FAULT_TIME]);
-        return PF_OK;
     case PF_TRIP:
         try_rectangle(test, corner, value[PF_SUPPLY_VOLTAGE], value[PF_TRIP_CURRENT],
                       value[PF_TRIP_TIME]);
-        return PF_OK;
+        break;
     case PF_RETRY:
         try_retry(test, corner, &at);
-        return PF_OK;
+        break;
     case PF_TURN_OFF:
         try_turn_off(test, corner, &at);
-        return PF_OK;
+        break;
     default:
-        return try_wave(test, corner, &at);
+        try_rectangle(test, corner, value[PF_SUPPLY_VOLTAGE], pf_corner_fault_A(profile, &at),
+                      value[PF_FAULT_TIME]);
+        break;
     }
+}
+
+static bool has_waves(pf_event event)
+{
+    return event == PF_START_UP || event == PF_SUPPLY_STEP || event == PF_RECORDED;
+}
+
+static pf_status try_all(trial *test)
+{
+    if (has_waves(test->slot->event)) return try_waves(test);
+    for (unsigned i = 0; i < test->slot->corners.number; i++)
+        try_corner(test, i);
+    return PF_OK;
 }
 
 /* What the corners said together. */
 static void conclude(trial *test)
 {
     pf_outcome *outcome = test->outcome;
-    double required = test->on->plan->profile.value[PF_REQUIRED_MARGIN].max;
     if (test->junction_unknown) {
         outcome->peak_junction_degC = PF_NONE;
         outcome->junction_cause = PF_CAUSE_NO_ZTH;
     }
-    if (test->unknown != PF_CAUSE_NONE && !(outcome->soa_margin < required)) {
-        outcome->soa_margin = outcome->worst_time_s = PF_NONE;
-        outcome->cause = test->unknown;
-        outcome->corner = test->unknown_corner;
-    } else if (outcome->soa_margin == 0) {
-        outcome->cause = PF_CAUSE_HOT_START;
-    }
+    if (outcome->soa_margin == 0) outcome->cause = PF_CAUSE_HOT_START;
 }
 
 static const pf_outcome nothing_known = {
@@ -261,7 +262,7 @@ static void outcome_of_running(const evaluation *on, pf_outcome *outcome)
 /* Why an event cannot even be begun; PF_CAUSE_NONE when it can. */
 static pf_cause why_not(const evaluation *on, const pf_slot *slot, double start_degC)
 {
-    if (slot->event == PF_SUPPLY_STEP && !slot->wave) return PF_CAUSE_NO_LIMIT;
+    if (slot->event == PF_SUPPLY_STEP && !slot->waves.count) return PF_CAUSE_NO_LIMIT;
     if (!pf_is_stated(on->stress->allowed_degC)) return PF_CAUSE_NO_TJ_MAX;
     if (!pf_is_stated(start_degC)) return PF_CAUSE_NO_START;
     return PF_CAUSE_NONE;
@@ -272,7 +273,6 @@ static pf_status evaluate_slot(const evaluation *on, size_t index)
     const pf_slot *slot = &on->plan->slot[index];
     pf_outcome *outcome = &on->stress->outcome[index];
     trial test = {.on = on, .slot = slot, .outcome = outcome};
-    pf_status status = PF_OK;
     *outcome = nothing_known;
     if (slot->event == PF_RUNNING) {
         outcome_of_running(on, outcome);
@@ -283,8 +283,7 @@ static pf_status evaluate_slot(const evaluation *on, size_t index)
     if (outcome->cause != PF_CAUSE_NONE) return PF_OK;
     test.subject = pf_subject_of(on->scratch->model, outcome->start_degC,
                                  on->plan->profile.extend_soa, on->scratch->sample);
-    for (unsigned i = 0; i < slot->corners.number && status == PF_OK; i++)
-        status = try_corner(&test, i);
+    pf_status status = try_all(&test);
     if (slot->event != PF_TURN_OFF) conclude(&test);
     return status;
 }
@@ -317,8 +316,7 @@ static pf_status prepare(evaluation *on)
     stress->rdson_cold_ohm = on->running.rdson.cold_ohm;
     stress->rdson_drive_V = on->running.rdson.drive_V;
     if (on->running.rdson.ratio_assumed) stress->remarks |= PF_REMARK_HOT_RATIO;
-    pf_status status = pf_grow((void **)&scratch->sample, &scratch->samples_room,
-                               on->plan->samples + 1, sizeof *scratch->sample);
+    pf_status status = pf_scratch_reserve(scratch, on->plan->samples);
     if (status == PF_OK) status = pf_model_load(scratch->model, on->part);
     if (status == PF_OK && pf_model_zth(scratch->model)->path == PF_JUNCTION_AMBIENT)
         stress->remarks |= PF_REMARK_AMBIENT_ZTH;
@@ -334,6 +332,12 @@ pf_status pf_plan_evaluate(const pf_plan *plan, const pf_part *part, pf_scratch 
         status = evaluate_slot(&on, i);
     summarise(plan, stress);
     return status;
+}
+
+pf_status pf_scratch_reserve(pf_scratch *scratch, size_t samples)
+{
+    return pf_grow((void **)&scratch->sample, &scratch->samples_room, samples + 1,
+                   sizeof *scratch->sample);
 }
 
 pf_scratch *pf_scratch_new(void)

@@ -66,12 +66,6 @@ static bool has_event(const pf_profile *profile, pf_event event)
     }
 }
 
-static void note_samples(pf_plan *plan, const pf_wave *wave)
-{
-    size_t samples = wave->kernel.levels * wave->kernel.lags;
-    if (samples > plan->samples) plan->samples = samples;
-}
-
 /* Slew control without a current limit leaves the recharge after a supply step open. */
 static bool step_is_open(const pf_profile *profile, pf_event event)
 {
@@ -79,21 +73,26 @@ static bool step_is_open(const pf_profile *profile, pf_event event)
            !profile->stated[PF_CURRENT_LIMIT];
 }
 
-static pf_status make_starts(pf_plan *plan, pf_slot *slot)
+pf_status pf_plan_starts(const pf_profile *profile, const pf_slot *slot, double crss_F,
+                         pf_waves *waves)
 {
-    const pf_profile *profile = &plan->profile;
-    if (step_is_open(profile, slot->event)) return PF_OK;
-    slot->wave = pf_allocate(slot->corners.number, sizeof *slot->wave);
-    if (!slot->wave) return PF_NO_MEMORY;
+    pf_start *start = pf_allocate(slot->corners.number, sizeof *start);
+    if (!start) return PF_NO_MEMORY;
     for (unsigned i = 0; i < slot->corners.number; i++) {
         pf_corner corner;
         pf_corner_at(&slot->corners, profile, i, &corner);
-        pf_start start = pf_start_at(profile, slot->event, &corner, PF_NONE);
-        pf_status status = pf_wave_from_start(&start, pf_plan_hold_s(profile), &slot->wave[i]);
-        if (status != PF_OK) return status;
-        note_samples(plan, &slot->wave[i]);
+        start[i] = pf_start_at(profile, slot->event, &corner, crss_F);
     }
-    return PF_OK;
+    pf_status status = pf_waves_from_starts(waves, start, slot->corners.number,
+                                            pf_plan_hold_s(profile), !pf_is_stated(crss_F));
+    pf_free(start);
+    return status;
+}
+
+static pf_status make_starts(pf_plan *plan, pf_slot *slot)
+{
+    if (step_is_open(&plan->profile, slot->event)) return PF_OK;
+    return pf_plan_starts(&plan->profile, slot, PF_NONE, &slot->waves);
 }
 
 static pf_status add_event(pf_plan *plan, pf_event event)
@@ -112,11 +111,7 @@ static pf_status add_capture(pf_plan *plan, const pf_capture *capture)
     slot->event = PF_RECORDED;
     snprintf(slot->name, sizeof slot->name, "%s", capture->name);
     pf_corners_init(&slot->corners, &plan->profile, PF_RECORDED);
-    slot->wave = pf_allocate(1, sizeof *slot->wave);
-    if (!slot->wave) return PF_NO_MEMORY;
-    pf_status status = pf_wave_from_capture(capture, slot->wave);
-    if (status == PF_OK) note_samples(plan, slot->wave);
-    return status;
+    return pf_waves_from_capture(&slot->waves, capture);
 }
 
 /* Adds a sentence to the stall text. */
@@ -155,8 +150,8 @@ static void judge_starts(pf_plan *plan, const pf_slot *slot)
 {
     const pf_wave *stuck = NULL;
     double slowest = 0, fastest = INFINITY;
-    for (unsigned i = 0; slot->wave && i < slot->corners.number; i++) {
-        const pf_wave *wave = &slot->wave[i];
+    for (size_t i = 0; i < slot->waves.count; i++) {
+        const pf_wave *wave = &slot->waves.wave[i];
         if (wave->stuck && (!stuck || wave->stuck_V < stuck->stuck_V)) stuck = wave;
         if (wave->stuck) continue;
         slowest = fmax(slowest, wave->duration_s);
@@ -179,6 +174,9 @@ static pf_status build(pf_plan *plan, const pf_capture *captures, size_t capture
     }
     for (size_t i = 0; i < capture_count && status == PF_OK; i++)
         status = add_capture(plan, &captures[i]);
+    for (size_t i = 0; i < plan->count; i++)
+        if (plan->slot[i].waves.samples > plan->samples)
+            plan->samples = plan->slot[i].waves.samples;
     return status;
 }
 
@@ -206,12 +204,8 @@ pf_status pf_plan_new(const pf_profile *profile, const pf_capture *captures, siz
 void pf_plan_free(pf_plan *plan)
 {
     if (!plan) return;
-    for (size_t i = 0; i < plan->count; i++) {
-        pf_slot *slot = &plan->slot[i];
-        for (unsigned w = 0; slot->wave && w < slot->corners.number; w++)
-            pf_wave_clear(&slot->wave[w]);
-        pf_free(slot->wave);
-    }
+    for (size_t i = 0; i < plan->count; i++)
+        pf_waves_clear(&plan->slot[i].waves);
     pf_free(plan);
 }
 

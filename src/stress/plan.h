@@ -11,14 +11,14 @@ typedef struct pf_slot {
     pf_event event;
     char name[128];
     pf_corners corners;
-    pf_wave *wave; /* one per corner for starts, one for a recording, else NULL */
+    pf_waves waves; /* of starts and recordings; else empty */
 } pf_slot;
 
 struct pf_plan {
     pf_profile profile;
     size_t count;
     pf_slot slot[PF_SLOTS_MAX];
-    size_t samples; /* largest levels * lags of any kernel */
+    size_t samples; /* the most that any waves need */
     double slowest_s, fastest_s;
     char stall[1024]; /* "" when the card starts */
 };
@@ -28,6 +28,14 @@ struct pf_scratch {
     double *sample;
     size_t samples_room;
 };
+
+/* Room for the samples of some waves. */
+pf_status pf_scratch_reserve(pf_scratch *scratch, size_t samples);
+
+/* The waves of a start_up or supply_step slot; crss_F as in pf_start_at. They are only pruned where
+** they are to be used for many parts, crss_F not stated. */
+pf_status pf_plan_starts(const pf_profile *profile, const pf_slot *slot, double crss_F,
+                         pf_waves *waves);
 
 /* Until when an output that sticks is held: the longest fault time. */
 double pf_plan_hold_s(const pf_profile *profile);

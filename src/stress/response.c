@@ -1,6 +1,7 @@
 /* response.c: superposition of one stress on one part. */
 #include "stress/response.h"
 #include "base/number.h"
+#include "numeric/dot.h"
 
 #include <math.h>
 
@@ -8,9 +9,6 @@
  *costs
  ** some 10 % on either; common practice, no source. */
 #define CLEARLY_BELOW 0.8
-
-/* Tries summed one by one; later ones are bounded as a block. */
-#define TRIES_SUMMED 2000
 
 pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend, double *sample)
 {
@@ -24,35 +22,46 @@ pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend, 
     return subject;
 }
 
-/* Reads the SOA at a time beyond the longest curve or not, noting on what it rests. */
-static double log_current(const pf_subject *subject, const pf_soa_column *column, double time_s,
-                          double log_time, unsigned *remarks)
+/* A time on the scale of the family, with what bounds the current there. */
+typedef struct instant {
+    pf_soa_place place;
+    pf_soa_beyond beyond;
+} instant;
+
+static bool is_beyond(const pf_subject *subject, pf_soa_place place)
 {
-    pf_soa_beyond beyond = {.extend = subject->extend, .log_zth_ratio = PF_NONE};
-    if (log_time > pf_soa_longest_log(subject->family) + 1e-12) {
-        beyond.log_zth_ratio =
+    return place.right == subject->family->pulses;
+}
+
+/* Finds a time among the family's curves, noting on what a reading beyond them rests. */
+static instant find_instant(const pf_subject *subject, double time_s, double log_time,
+                            unsigned *remarks)
+{
+    instant at = {pf_soa_place_of(subject->family, log_time), {PF_NONE, subject->extend}};
+    if (is_beyond(subject, at.place)) {
+        at.beyond.log_zth_ratio =
             subject->log_zth_longest - log(pf_zth_at(subject->zth, time_s, log_time));
         *remarks |= subject->family->dc ? PF_REMARK_DC_BOUND : PF_REMARK_EXTENDED;
     }
-    return pf_soa_log_current(column, log_time, beyond);
+    return at;
 }
 
 /* Why a column says nothing at a time. */
-static pf_cause why_silent(const pf_subject *subject, const pf_soa_column *column, double log_time)
+static pf_cause why_silent(const pf_subject *subject, const pf_soa_column *column, instant at)
 {
     const pf_soa_family *family = subject->family;
-    bool beyond = log_time > pf_soa_longest_log(family) + 1e-12;
-    if (beyond && !family->dc && !subject->extend) return PF_CAUSE_NO_DC_LINE;
-    if (beyond && !family->dc && pf_is_stated(column->log_i[family->pulses - 1]) &&
-        !pf_is_stated(subject->log_zth_longest))
+    bool open = is_beyond(subject, at.place) && !family->dc;
+    if (open && !subject->extend) return PF_CAUSE_NO_DC_LINE;
+    if (open && pf_is_stated(column->log_i[family->pulses - 1]) &&
+        !pf_is_stated(at.beyond.log_zth_ratio))
         return PF_CAUSE_NO_ZTH;
     return PF_CAUSE_BEYOND_VOLTAGE;
 }
 
 static bool soa_is_there(const pf_subject *subject, pf_response *response)
 {
-    response->hot_rise_K = response->worst_s = PF_NONE;
-    response->remarks = 0;
+    *response =
+        (pf_response){.hot_rise_K = PF_NONE, .worst_s = PF_NONE, .junction_rise_K = PF_NONE};
     response->cause = !subject->family              ? PF_CAUSE_NO_SOA
                       : subject->family->span_K > 0 ? PF_CAUSE_NONE
                                                     : PF_CAUSE_NO_TJ_MAX;
@@ -61,60 +70,157 @@ static bool soa_is_there(const pf_subject *subject, pf_response *response)
     return response->cause == PF_CAUSE_NONE;
 }
 
-/* Fills the samples span/I_SOA of a kernel's grid. False with the cause where one is missing. */
-static bool sample_soa(const pf_subject *subject, const pf_kernel *kernel, pf_response *response)
+/* One level of a kernel's grid as ln I_SOA. False with the cause where a sample that is needed is
+** missing; *whole becomes false where one that is not needed is. */
+static bool sample_level(const pf_subject *subject, const pf_kernel *kernel, size_t level,
+                         const instant *at, bool *whole, pf_response *response)
 {
     pf_soa_column column;
-    for (size_t i = 0; i < kernel->levels; i++) {
-        pf_soa_column_at(subject->family, kernel->log_level[i], &column);
-        for (size_t j = 0; j < kernel->lags; j++) {
-            size_t at = i * kernel->lags + j;
-            subject->sample[at] = 0;
-            if (!kernel->used[at]) continue;
-            double log_i = log_current(subject, &column, kernel->lag[j], kernel->log_lag[j],
-                                       &response->remarks);
-            subject->sample[at] = subject->family->span_K * exp(-log_i);
-            if (pf_is_stated(log_i)) continue;
-            response->cause = why_silent(subject, &column, kernel->log_lag[j]);
+    double *sample = subject->sample + level * kernel->lags;
+    const bool *used = kernel->used + level * kernel->lags;
+    pf_soa_column_at(subject->family, kernel->log_level[level], &column);
+    for (size_t j = 0; j < kernel->lags; j++) {
+        sample[j] = pf_soa_log_current(&column, at[j].place, at[j].beyond);
+        if (pf_is_stated(sample[j])) continue;
+        if (used[j]) {
+            response->cause = why_silent(subject, &column, at[j]);
             return false;
         }
+        *whole = false;
+        sample[j] = 0;
     }
     return true;
 }
 
+/* The lags as instants. Where the current steps down behind the longest curve (a DC line without a
+*Zth
+** that leads there), the step is taken at the lag before it, never after it. */
+static void find_instants(const pf_subject *subject, const pf_kernel *kernel, instant *at,
+                          unsigned *remarks)
+{
+    size_t last = kernel->lags - 1;
+    for (size_t j = 0; j <= last; j++)
+        at[j] = find_instant(subject, kernel->lag[j], kernel->log_lag[j], remarks);
+    if (!subject->family->dc || pf_zth_stated(subject->zth)) return;
+    for (size_t j = 0; j < last; j++)
+        if (is_beyond(subject, at[j + 1].place)) at[j] = at[j + 1];
+}
+
+/* Fills the samples span/I_SOA of a kernel's grid. False with the cause where one is missing. */
+static bool sample_soa(const pf_subject *subject, const pf_kernel *kernel, bool *regular,
+                       pf_response *response)
+{
+    instant at[PF_LAGS_MAX];
+    bool whole = true;
+    find_instants(subject, kernel, at, &response->remarks);
+    for (size_t i = 0; i < kernel->levels; i++)
+        if (!sample_level(subject, kernel, i, at, &whole, response)) return false;
+    pf_exp_negative(subject->sample, kernel->levels * kernel->lags, subject->family->span_K);
+    *regular = whole && pf_kernel_is_regular(subject->sample, kernel->levels, kernel->lags);
+    return true;
+}
+
+/* How far a kink at a pulse width that is no lag lies above the chord between the lags beside it,
+*as a
+** share: what the grid may miss at moments near it. */
+static double kink_share(const pf_kernel *kernel, const double *sample, double pulse_s,
+                         double value, double moment)
+{
+    size_t j = 1;
+    while (j < kernel->lags && kernel->lag[j] < pulse_s * (1 - 1e-9))
+        j++;
+    if (j == kernel->lags || kernel->lag[j] <= pulse_s * (1 + 1e-9)) return 0;
+    if (kernel->lag[j - 1] > 2 * moment || kernel->lag[j] < moment / 2) return 0;
+    double part = (pulse_s - kernel->lag[j - 1]) / (kernel->lag[j] - kernel->lag[j - 1]);
+    double chord = sample[j - 1] + part * (sample[j] - sample[j - 1]);
+    return chord > 0 ? fmax(0, value / chord - 1) : 0;
+}
+
+/* The largest share over all levels: added to the rise, so that the error goes to the safe side. */
+static double kink_allowance(const pf_subject *subject, const pf_kernel *kernel, double moment)
+{
+    const pf_soa_family *family = subject->family;
+    pf_soa_column column;
+    double allowance = 0;
+    for (size_t i = 1; i < kernel->levels; i++) {
+        const double *sample = subject->sample + i * kernel->lags;
+        pf_soa_column_at(family, kernel->log_level[i], &column);
+        for (size_t k = 0; k < family->pulses; k++) {
+            double value = family->span_K * exp(-column.log_i[k]);
+            double share = kink_share(kernel, sample, family->curve[k].pulse_s, value, moment);
+            allowance = share > allowance ? share : allowance;
+        }
+    }
+    return allowance;
+}
+
+/* Whether every pulse width of the family within the kernel's lags is a lag. */
+static bool pulses_are_lags(const pf_subject *subject, const pf_kernel *kernel)
+{
+    const pf_soa_family *family = subject->family;
+    for (size_t k = 0, j = 1; k < family->pulses; k++) {
+        double pulse_s = family->curve[k].pulse_s;
+        while (j < kernel->lags && kernel->lag[j] < pulse_s * (1 - 1e-9))
+            j++;
+        if (j == kernel->lags) return true;
+        if (kernel->lag[j] > pulse_s * (1 + 1e-9)) return false;
+    }
+    return true;
+}
+
+static void respond_soa(const pf_subject *subject, const pf_kernel *kernel, pf_response *response)
+{
+    bool regular;
+    double rise = PF_NONE;
+    if (response->cause != PF_CAUSE_NONE) return;
+    if (!sample_soa(subject, kernel, &regular, response)) {
+        response->hot_rise_K = response->worst_s = PF_NONE;
+        return;
+    }
+    size_t rows = regular ? kernel->rows.kept : kernel->rows.count;
+    const pf_kernel_row *row = pf_kernel_peak(kernel, &kernel->rows, rows, subject->sample, &rise);
+    if (!pulses_are_lags(subject, kernel)) rise *= 1 + kink_allowance(subject, kernel, row->moment);
+    if (rise <= response->hot_rise_K) return;
+    response->hot_rise_K = rise;
+    response->worst_s = row->moment;
+    response->corner = (unsigned)row->trace;
+}
+
 static double junction_rise(const pf_subject *subject, const pf_kernel *kernel)
 {
-    double when;
+    double rise = PF_NONE;
     if (!pf_zth_stated(subject->zth)) return PF_NONE;
     for (size_t j = 0; j < kernel->lags; j++)
         subject->sample[j] = pf_zth_at(subject->zth, kernel->lag[j], kernel->log_lag[j]);
-    return pf_kernel_total_peak(kernel, subject->sample, &when);
+    bool regular = pf_kernel_is_regular(subject->sample, 1, kernel->lags);
+    size_t rows = regular ? kernel->total.kept : kernel->total.count;
+    pf_kernel_peak(kernel, &kernel->total, rows, subject->sample, &rise);
+    return rise;
 }
 
-void pf_respond_wave(const pf_subject *subject, const pf_wave *wave, pf_response *response)
+void pf_respond_waves(const pf_subject *subject, const pf_waves *waves, pf_response *response)
 {
-    if (wave->unbounded) {
-        *response = (pf_response){PF_NONE, PF_NONE, PF_NONE, PF_CAUSE_UNBOUNDED_CURRENT, 0};
-        return;
+    soa_is_there(subject, response);
+    if (waves->unbounded) response->cause = PF_CAUSE_UNBOUNDED_CURRENT;
+    for (size_t i = 0; i < waves->kernels; i++) {
+        double junction = junction_rise(subject, &waves->kernel[i]);
+        response->junction_rise_K = fmax(response->junction_rise_K, junction);
+        respond_soa(subject, &waves->kernel[i], response);
     }
-    if (soa_is_there(subject, response) && sample_soa(subject, &wave->kernel, response))
-        response->hot_rise_K = pf_kernel_peak(&wave->kernel, subject->sample, &response->worst_s);
-    response->junction_rise_K = junction_rise(subject, &wave->kernel);
 }
 
 /* The smallest current allowed for a pulse and every shorter one; when that is. */
 static double pulse_log_current(const pf_subject *subject, const pf_soa_column *column,
-                                double time_s, double log_time, pf_response *response)
+                                double log_i, double time_s, pf_response *response)
 {
-    double lowest = log_current(subject, column, time_s, log_time, &response->remarks);
-    response->worst_s = time_s;
     const pf_soa_family *family = subject->family;
-    for (size_t i = 0; i < family->pulses && family->curve[i].log_pulse < log_time; i++) {
-        if (!(column->log_i[i] < lowest)) continue;
-        lowest = column->log_i[i];
+    response->worst_s = time_s;
+    for (size_t i = 0; i < family->pulses && family->curve[i].pulse_s < time_s; i++) {
+        if (!(column->log_i[i] < log_i)) continue;
+        log_i = column->log_i[i];
         response->worst_s = family->curve[i].pulse_s;
     }
-    return lowest;
+    return log_i;
 }
 
 static void respond_soa_rectangle(const pf_subject *subject, double vds_V, double id_A,
@@ -122,13 +228,14 @@ static void respond_soa_rectangle(const pf_subject *subject, double vds_V, doubl
 {
     pf_soa_column column;
     double log_time = log(time_s);
+    instant at = find_instant(subject, time_s, log_time, &response->remarks);
     pf_soa_column_at(subject->family, log(vds_V), &column);
-    double log_i = pulse_log_current(subject, &column, time_s, log_time, response);
+    double log_i = pf_soa_log_current(&column, at.place, at.beyond);
     if (!pf_is_stated(log_i)) {
-        response->cause = why_silent(subject, &column, log_time);
-        response->worst_s = PF_NONE;
+        response->cause = why_silent(subject, &column, at);
         return;
     }
+    log_i = pulse_log_current(subject, &column, log_i, time_s, response);
     response->hot_rise_K = subject->family->span_K * id_A * exp(-log_i);
     double zth = pf_zth_at(subject->zth, time_s, log_time);
     if (response->hot_rise_K < CLEARLY_BELOW * zth * vds_V * id_A)
@@ -141,58 +248,4 @@ void pf_respond_rectangle(const pf_subject *subject, double vds_V, double id_A, 
     if (soa_is_there(subject, response))
         respond_soa_rectangle(subject, vds_V, id_A, time_s, response);
     response->junction_rise_K = vds_V * id_A * pf_zth_at(subject->zth, time_s, log(time_s));
-}
-
-static double train_term(const pf_zth *zth, double on_s, double lag_s)
-{
-    return pf_zth_at(zth, lag_s + on_s, log(lag_s + on_s)) - pf_zth_at(zth, lag_s, log(lag_s));
-}
-
-/* Foster pairs: a geometric series per pair. */
-static double foster_train(const pf_zth *zth, double on_s, double interval_s, double count)
-{
-    double sum = 0;
-    for (size_t i = 0; i < zth->pairs; i++) {
-        double tau = zth->pair[i].tau_s;
-        double warm = -expm1(-on_s / tau), all = expm1(-(count - 1) * interval_s / tau);
-        sum += zth->pair[i].r_KpW * warm * all / expm1(-interval_s / tau) * exp(-interval_s / tau);
-    }
-    return sum;
-}
-
-/* Tries from the lag from_s on, up to last_s, as a block. Zth bends downwards, so that the mean
- *over
- ** an interval bounds the sum from above: on_s/T (Z(last + on) - Z(from)). */
-static double train_rest(const pf_zth *zth, double on_s, double interval_s, double from_s,
-                         double last_s)
-{
-    double end_s = last_s + on_s;
-    double rise = pf_zth_at(zth, end_s, log(end_s)) - pf_zth_at(zth, from_s, log(from_s));
-    return on_s / interval_s * rise;
-}
-
-/* Where the steady resistance is above the last point, Zth steps up there. A step that falls
- *between
- ** two tries would be lost to the sum: its mean share counts instead. */
-static double missed_step(const pf_zth *zth, double on_s, double interval_s, double count)
-{
-    double settled_s = pf_zth_settled_s(zth);
-    double step = zth->beyond_KpW - exp(zth->log_z[zth->points - 1]);
-    bool met = settled_s >= interval_s && fmod(settled_s, interval_s) < on_s;
-    return met || (count - 1) * interval_s <= settled_s ? 0 : on_s / interval_s * step;
-}
-
-double pf_train_zth(const pf_zth *zth, double on_s, double interval_s, double count)
-{
-    if (!pf_zth_stated(zth)) return PF_NONE;
-    if (!(count > 1)) return 0;
-    if (zth->pairs) return foster_train(zth, on_s, interval_s, count);
-    double settled_s = pf_zth_settled_s(zth), sum = 0;
-    double last = fmin(count - 1, ceil(settled_s / interval_s));
-    double summed = fmin(last, TRIES_SUMMED);
-    for (double k = 1; k <= summed; k++)
-        sum += train_term(zth, on_s, k * interval_s);
-    if (last > summed)
-        return sum + train_rest(zth, on_s, interval_s, summed * interval_s, last * interval_s);
-    return sum + missed_step(zth, on_s, interval_s, count);
 }

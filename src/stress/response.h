@@ -19,12 +19,13 @@ typedef struct pf_subject {
     const pf_soa_family *family; /* NULL: no SOA */
     double log_zth_longest;      /* ln Zth at the family's longest finite pulse */
     bool extend;                 /* beyond_soa, extend */
-    double *sample;              /* scratch: at least levels * lags of any kernel */
+    double *sample;              /* scratch: at least the samples of any waves */
 } pf_subject;
 
 typedef struct pf_response {
     double hot_rise_K;      /* max of dT_hot; NaN with its cause */
     double worst_s;         /* when */
+    unsigned corner;        /* at which corner of the waves */
     double junction_rise_K; /* max of T_j - T_start; NaN where no Zth is stated */
     pf_cause cause;
     unsigned remarks;
@@ -32,8 +33,8 @@ typedef struct pf_response {
 
 pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend, double *sample);
 
-/* A waveform with its kernel. */
-void pf_respond_wave(const pf_subject *subject, const pf_wave *wave, pf_response *response);
+/* Waveforms with their kernels: the largest rises over all corners. */
+void pf_respond_waves(const pf_subject *subject, const pf_waves *waves, pf_response *response);
 
 /* A rectangle of vds_V and id_A for time_s: exactly the hand calculation. A longer pulse contains
  *the

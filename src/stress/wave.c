@@ -9,12 +9,61 @@
 #include "base/number.h"
 
 #include <math.h>
+#include <stdlib.h>
 
-static const pf_kernel_size start_size = {.lags = 33, .levels = 25};
+/* Lags grow as squares of even steps: an impedance that rises with the square root of time is then
+** equally well resolved everywhere. STEPS of them, and the pulse widths that sheets like to draw.
+ */
+#define STEPS 32
+
+static const pf_kernel_size start_size = {.levels = 17, .corners = 64};
+
+/* Waveforms of one kernel: the longest at most this many times the shortest, which then still meets
+** more than half of the lags. */
+#define GROUP_SPAN 3
 
 /* A recording may hold anything: finer, and looked at more often. */
 #define CAPTURE_MOMENTS 64 /* equal steps of time, and as many of energy */
-static const pf_kernel_size capture_size = {.lags = 49, .levels = 33};
+static const pf_kernel_size capture_size = {.levels = 33, .corners = 64};
+
+/* Moves the lag nearest to a pulse width there, or adds one. */
+static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
+{
+    size_t at = 1;
+    while (at < lags && lag[at] < pulse_s)
+        at++;
+    if (at >= lags || lag[at] == pulse_s) return lags;
+    double below = pulse_s - lag[at - 1], above = lag[at] - pulse_s;
+    if (above < 0.3 * (below + above) && at < lags - 1) {
+        lag[at] = pulse_s;
+    } else if (below < 0.3 * (below + above) && at > 1) {
+        lag[at - 1] = pulse_s;
+    } else if (lags < PF_LAGS_MAX) {
+        for (size_t i = lags; i > at; i--)
+            lag[i] = lag[i - 1];
+        lag[at] = pulse_s;
+        return lags + 1;
+    }
+    return lags;
+}
+
+/* The lags of a kernel of waveforms that last up to duration_s; returns how many. A kink of the SOA
+*in
+** time lies at a pulse width; on a lag it costs nothing. */
+static size_t place_lags(double lag[PF_LAGS_MAX], double duration_s)
+{
+    static const double mantissa[] = {1, 2, 5};
+    size_t lags = 0;
+    for (; lags <= STEPS; lags++)
+        lag[lags] = duration_s * (double)(lags * lags) / (double)(STEPS * STEPS);
+    for (int decade = -6; decade <= 2; decade++)
+        for (int i = 0; i < 3; i++) {
+            double pulse_s =
+                decade < 0 ? mantissa[i] / pow(10, -decade) : mantissa[i] * pow(10, decade);
+            if (pulse_s > duration_s / 300) lags = place_pulse(lag, lags, pulse_s);
+        }
+    return lags;
+}
 
 static double slew_at(const pf_profile *profile, const pf_corner *corner, double crss_F)
 {
@@ -55,22 +104,107 @@ pf_start pf_start_at(const pf_profile *profile, pf_event event, const pf_corner 
     return start;
 }
 
-pf_status pf_wave_from_start(const pf_start *start, double hold_s, pf_wave *wave)
-{
+/* A waveform with the corner that it belongs to. */
+typedef struct corner_form {
+    size_t corner;
     pf_waveform form;
-    *wave = (pf_wave){0};
-    pf_status status = pf_start_waveform(start, hold_s, &form);
+} corner_form;
+
+static pf_wave scalars_of(const pf_waveform *form)
+{
+    return (pf_wave){
+        .duration_s = form->duration_s,
+        .energy_J = form->energy_J,
+        .peak_power_W = form->peak_power_W,
+        .peak_current_A = form->peak_current_A,
+        .stuck = form->stuck,
+        .unbounded = form->unbounded,
+        .stuck_V = form->stuck_V,
+    };
+}
+
+static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count,
+                            pf_kernel_size size, bool prune)
+{
+    double lag[PF_LAGS_MAX], longest_s = 0;
+    for (size_t i = 0; i < count; i++)
+        longest_s = fmax(longest_s, trace[i].time[trace[i].count - 1]);
+    size.lag = lag;
+    size.lags = place_lags(lag, longest_s);
+    pf_kernel *kernel = &waves->kernel[waves->kernels];
+    pf_status status = pf_kernel_init(kernel, trace, count, size);
     if (status != PF_OK) return status;
-    wave->duration_s = form.duration_s;
-    wave->energy_J = form.energy_J;
-    wave->peak_power_W = form.peak_power_W;
-    wave->peak_current_A = form.peak_current_A;
-    wave->stuck = form.stuck;
-    wave->stuck_V = form.stuck_V;
-    wave->unbounded = form.unbounded;
-    const pf_trace trace = {form.count, form.time_s, form.vds_V, form.id_A};
-    if (!form.unbounded) status = pf_kernel_init(&wave->kernel, &trace, start_size);
-    pf_waveform_clear(&form);
+    waves->kernels++;
+    if (kernel->levels * kernel->lags > waves->samples)
+        waves->samples = kernel->levels * kernel->lags;
+    return prune ? pf_kernel_prune(kernel) : PF_OK;
+}
+
+static int longest_first(const void *left, const void *right)
+{
+    const corner_form *a = left, *b = right;
+    if (a->form.duration_s != b->form.duration_s)
+        return a->form.duration_s > b->form.duration_s ? -1 : 1;
+    return (a->corner > b->corner) - (a->corner < b->corner);
+}
+
+/* Makes kernels of waveforms whose durations lie within GROUP_SPAN of each other. */
+static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool prune)
+{
+    size_t first = 0, used = 0;
+    pf_status status = PF_OK;
+    qsort(form, waves->count, sizeof *form, longest_first);
+    for (size_t i = 0; i <= waves->count && status == PF_OK; i++) {
+        bool ends = i == waves->count || form[i].form.unbounded ||
+                    form[i].form.duration_s * GROUP_SPAN < form[first].form.duration_s;
+        if (ends && used > first) {
+            status = add_kernel(waves, trace + first, used - first, start_size, prune);
+            first = used;
+        }
+        if (i == waves->count || form[i].form.unbounded) continue;
+        const pf_waveform *points = &form[i].form;
+        trace[used++] =
+            (pf_trace){form[i].corner, points->count, points->time_s, points->vds_V, points->id_A};
+    }
+    return status;
+}
+
+/* The waveforms themselves; everything but the kernels. */
+static pf_status integrate(pf_waves *waves, const pf_start *start, double hold_s, corner_form *form)
+{
+    for (size_t i = 0; i < waves->count; i++) {
+        form[i].corner = i;
+        pf_status status = pf_start_waveform(&start[i], hold_s, &form[i].form);
+        if (status != PF_OK) return status;
+        waves->wave[i] = scalars_of(&form[i].form);
+        waves->unbounded |= form[i].form.unbounded;
+        waves->peak_current_A = fmax(waves->peak_current_A, waves->wave[i].peak_current_A);
+    }
+    return PF_OK;
+}
+
+static pf_status allocate(pf_waves *waves, size_t count)
+{
+    *waves = (pf_waves){.count = count};
+    waves->wave = pf_allocate(count, sizeof *waves->wave);
+    waves->kernel = pf_allocate(count, sizeof *waves->kernel);
+    return waves->wave && waves->kernel ? PF_OK : PF_NO_MEMORY;
+}
+
+pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s,
+                               bool prune)
+{
+    pf_status status = allocate(waves, count);
+    corner_form *form = pf_allocate(count, sizeof *form);
+    pf_trace *trace = pf_allocate(count, sizeof *trace);
+    if (!form || !trace) status = PF_NO_MEMORY;
+    if (status == PF_OK) status = integrate(waves, start, hold_s, form);
+    if (status == PF_OK) status = group(waves, form, trace, prune);
+    for (size_t i = 0; form && i < count; i++)
+        pf_waveform_clear(&form[i].form);
+    pf_free(form);
+    pf_free(trace);
+    if (status != PF_OK) pf_waves_clear(waves);
     return status;
 }
 
@@ -103,46 +237,55 @@ static double segment_energy(const pf_trace *trace, size_t i)
 }
 
 /* Scalars of the trace, and the moments at which its energy passes equal shares. */
-static void survey(pf_wave *wave, const pf_trace *trace, double *moment)
+static pf_wave survey(const pf_trace *trace, double *moment)
 {
+    pf_wave wave = {.duration_s = trace->time[trace->count - 1]};
     double passed = 0;
     size_t quantile = 0;
     for (size_t i = 0; i < trace->count; i++) {
-        wave->peak_power_W = fmax(wave->peak_power_W, trace->level[i] * trace->flow[i]);
-        wave->peak_current_A = fmax(wave->peak_current_A, trace->flow[i]);
-        if (i + 1 < trace->count) wave->energy_J += segment_energy(trace, i);
+        wave.peak_power_W = fmax(wave.peak_power_W, trace->level[i] * trace->flow[i]);
+        wave.peak_current_A = fmax(wave.peak_current_A, trace->flow[i]);
+        if (i + 1 < trace->count) wave.energy_J += segment_energy(trace, i);
     }
-    wave->duration_s = trace->time[trace->count - 1];
-    for (size_t i = 0; i + 1 < trace->count && quantile < CAPTURE_MOMENTS; i++) {
+    for (size_t i = 0; i + 1 < trace->count; i++) {
         passed += segment_energy(trace, i);
         while (quantile < CAPTURE_MOMENTS &&
-               passed * CAPTURE_MOMENTS >= wave->energy_J * (double)(quantile + 1) * (1 - 1e-12))
+               passed * CAPTURE_MOMENTS >= wave.energy_J * (double)(quantile + 1))
             moment[quantile++] = trace->time[i + 1];
     }
     while (quantile < CAPTURE_MOMENTS)
-        moment[quantile++] = wave->duration_s;
+        moment[quantile++] = wave.duration_s;
     for (size_t i = 0; i < CAPTURE_MOMENTS; i++)
-        moment[CAPTURE_MOMENTS + i] = wave->duration_s * (double)(i + 1) / CAPTURE_MOMENTS;
+        moment[CAPTURE_MOMENTS + i] = wave.duration_s * (double)(i + 1) / CAPTURE_MOMENTS;
+    return wave;
 }
 
-pf_status pf_wave_from_capture(const pf_capture *capture, pf_wave *wave)
+pf_status pf_waves_from_capture(pf_waves *waves, const pf_capture *capture)
 {
     double *time, *vds, *id, moment[2 * CAPTURE_MOMENTS];
-    *wave = (pf_wave){0};
+    pf_kernel_size size = capture_size;
+    *waves = (pf_waves){0};
     pf_status status = copy_samples(capture, &time, &vds, &id);
     if (status != PF_OK) return status;
-    const pf_trace trace = {capture->count, time, vds, id};
-    survey(wave, &trace, moment);
-    pf_kernel_size size = capture_size;
+    const pf_trace trace = {0, capture->count, time, vds, id};
     size.extra = moment;
     size.extra_count = sizeof moment / sizeof *moment;
-    status = pf_kernel_init(&wave->kernel, &trace, size);
+    status = allocate(waves, 1);
+    if (status == PF_OK) {
+        waves->wave[0] = survey(&trace, moment);
+        waves->peak_current_A = waves->wave[0].peak_current_A;
+        status = add_kernel(waves, &trace, 1, size, true);
+    }
     pf_free(time);
+    if (status != PF_OK) pf_waves_clear(waves);
     return status;
 }
 
-void pf_wave_clear(pf_wave *wave)
+void pf_waves_clear(pf_waves *waves)
 {
-    pf_kernel_clear(&wave->kernel);
-    *wave = (pf_wave){0};
+    for (size_t i = 0; i < waves->kernels; i++)
+        pf_kernel_clear(&waves->kernel[i]);
+    pf_free(waves->kernel);
+    pf_free(waves->wave);
+    *waves = (pf_waves){0};
 }
