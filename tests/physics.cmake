@@ -27,3 +27,12 @@ pf_test(test_cross_hot_spot SOURCES reference/test_cross_hot_spot.c reference/du
 pf_test(test_cross_start_up SOURCES reference/test_cross_start_up.c LIBRARIES ${GSL_TESTS})
 pf_test(test_cross_junction SOURCES reference/test_cross_junction.c LIBRARIES ${GSL_TESTS})
 pf_test(test_cross_closed SOURCES reference/test_cross_closed.c LIBRARIES ${GSL_TESTS})
+
+# Reference records: data, one runner. docs/testing_worst.md is written by `reference_page`.
+set(RECORDS soa thermal start_up steady_state turn_off derating)
+list(TRANSFORM RECORDS PREPEND ${CMAKE_CURRENT_SOURCE_DIR}/reference/records/)
+list(TRANSFORM RECORDS APPEND .tsv)
+pf_test(test_reference SOURCES reference/test_reference.c reference/quantities.c
+  LIBRARIES ${PHYSICS} ARGUMENTS ${RECORDS})
+add_custom_target(reference_page
+  COMMAND test_reference --write ${PROJECT_SOURCE_DIR}/docs/testing_worst.md ${RECORDS})
