@@ -183,7 +183,7 @@ static pf_status read_gate_drive(pieces *found, const pf_column_kind *kind, doub
     static const char right[] = "a condition such as `rdson_max @ 4.5 V`";
     pf_number_style style = {'.', 0, 0};
     pf_slice text = found->condition;
-    const char *equals = memchr(text.text, '=', text.length);
+    const char *equals = text.length > 0 ? memchr(text.text, '=', text.length) : NULL;
     size_t taken, at = 0;
     double factor = 1;
     if (text.length == 0)

@@ -280,7 +280,7 @@ static pf_status report_end(pf_reader *reader, pf_status status)
     const pf_table_fault *fault = pf_table_fault_of(reader->table);
     if (status != PF_BAD_INPUT && status != PF_LIMIT) return status;
     reader->file_refused = true;
-    if (fault->line == 0) { /* the row's reader ended it */
+    if (!fault->wrong[0]) { /* the row's reader ended it */
         pf_place place = {reader->file, pf_table_lines(reader->table), NULL, NULL};
         return pf_problems_add(reader->problems, PF_SEVERITY_REFUSAL, place, "repair these first",
                                "reading ends here, after %d refusals", PF_PROBLEMS_MAX);

@@ -157,7 +157,7 @@ static pf_status feed(void *context, const char *bytes, size_t length)
 static pf_status report_end(pf_sheet *sheet, pf_status status)
 {
     const pf_table_fault *fault = pf_table_fault_of(sheet->table);
-    if ((status != PF_BAD_INPUT && status != PF_LIMIT) || fault->line == 0) return status;
+    if ((status != PF_BAD_INPUT && status != PF_LIMIT) || !fault->wrong[0]) return status;
     pf_place place = {sheet->file, fault->line, NULL, fault->text[0] ? fault->text : NULL};
     return pf_problems_add(sheet->problems, PF_SEVERITY_REFUSAL, place, fault->right, "%s",
                            fault->wrong);

@@ -83,7 +83,7 @@ size_t pf_fold(pf_slice name, char folded[PF_FOLDED_ROOM])
     size_t length = 0;
     for (size_t i = 0; i < name.length && length < PF_FOLDED_ROOM - 1;) {
         size_t blank = pf_blank_length(name.text + i, name.length - i);
-        if (blank == 0 && !strchr("_-().", name.text[i])) folded[length++] = lower(name.text[i]);
+        if (blank == 0 && !strchr("_-().,", name.text[i])) folded[length++] = lower(name.text[i]);
         i += blank ? blank : 1;
     }
     folded[length] = '\0';

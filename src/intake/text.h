@@ -31,7 +31,7 @@ bool pf_starts(pf_slice slice, const char *start);
 /* Blank, `-`, a dash, `n/a`, `TBD`: not stated. */
 bool pf_not_stated(pf_slice slice);
 
-/* The name without blanks, `_`, `-`, `(`, `)`, `.`, in small letters, cut to room - 1 bytes.
+/* The name without blanks, `_`, `-`, `(`, `)`, `.`, `,`, in small letters, cut to room - 1 bytes.
 ** Returns its length. */
 #define PF_FOLDED_ROOM 128
 size_t pf_fold(pf_slice name, char folded[PF_FOLDED_ROOM]);

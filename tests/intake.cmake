@@ -1,0 +1,8 @@
+# Tests of reading CSV: cells, files, curves, profiles, damaged files.
+add_library(pf_intake_test_support STATIC support/lines.c)
+target_include_directories(pf_intake_test_support PUBLIC ${CMAKE_CURRENT_SOURCE_DIR} ${CMOCKA_INCLUDE_DIR})
+target_compile_definitions(pf_intake_test_support PUBLIC PF_TEST_DATA="${CMAKE_CURRENT_SOURCE_DIR}")
+
+set(INTAKE pf_intake_test_support pf_intake)
+pf_test(test_intake_cells SOURCES unit/test_intake_cells.c LIBRARIES ${INTAKE})
+pf_test(test_intake_files SOURCES unit/test_intake_files.c LIBRARIES ${INTAKE})
