@@ -1,8 +1,18 @@
 # Tests of reading CSV: cells, files, curves, profiles, damaged files.
-add_library(pf_intake_test_support STATIC support/lines.c)
+add_library(pf_intake_test_support STATIC support/lines.c support/pollute.c)
 target_include_directories(pf_intake_test_support PUBLIC ${CMAKE_CURRENT_SOURCE_DIR} ${CMOCKA_INCLUDE_DIR})
 target_compile_definitions(pf_intake_test_support PUBLIC PF_TEST_DATA="${CMAKE_CURRENT_SOURCE_DIR}")
 
 set(INTAKE pf_intake_test_support pf_intake)
 pf_test(test_intake_cells SOURCES unit/test_intake_cells.c LIBRARIES ${INTAKE})
 pf_test(test_intake_files SOURCES unit/test_intake_files.c LIBRARIES ${INTAKE})
+pf_test(test_intake_pollution SOURCES unit/test_intake_pollution.c LIBRARIES ${INTAKE})
+pf_test(test_intake_chunks SOURCES unit/test_intake_chunks.c LIBRARIES ${INTAKE})
+
+add_executable(table_dump support/table_dump.c)
+target_link_libraries(table_dump PRIVATE pf_intake)
+find_package(Python3 COMPONENTS Interpreter)
+if(Python3_FOUND)
+  add_test(NAME csv_compare
+    COMMAND ${Python3_EXECUTABLE} ${CMAKE_CURRENT_SOURCE_DIR}/unit/csv_compare.py $<TARGET_FILE:table_dump>)
+endif()

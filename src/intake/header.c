@@ -190,7 +190,10 @@ static pf_status note_ignored(pf_reader *reader, const char *name, const pf_colu
                               size_t count)
 {
     pf_fault fault;
-    if (!*name) return PF_OK;
+    if (!*name) {
+        pf_fault_set(&fault, "a name, if it is to be kept", "a column without a name is ignored");
+        return report(reader, PF_SEVERITY_WARNING, NULL, NULL, &fault);
+    }
     const pf_column_kind *near = pf_column_near(pf_slice_from(name, strlen(name)), list, count);
     pf_fault_set(&fault, "", "column ignored: it is none that is kept");
     if (near) snprintf(fault.right, sizeof fault.right, "did you mean %s?", near->csv);

@@ -155,6 +155,28 @@ static bool is_blank_row(const pf_row *row)
     return true;
 }
 
+/* Where no row has as many cells as the header, the header is to blame. */
+static pf_status judge_header(pf_reader *reader)
+{
+    pf_fault fault;
+    pf_place place = {reader->file, reader->header_line, NULL, NULL};
+    if (!reader->some_odd || reader->some_even) return PF_OK;
+    reader->file_refused = true;
+    pf_fault_set(&fault, "a header with a name for every column",
+                 "the header has %zu cells and no row has as many", reader->column_count);
+    return pf_reader_report(reader, PF_SEVERITY_REFUSAL, place, &fault);
+}
+
+static pf_status warn_cut_short(pf_reader *reader)
+{
+    pf_fault fault;
+    pf_place place = {reader->file, pf_table_lines(reader->table), NULL, NULL};
+    if (!pf_table_cut_short(reader->table)) return PF_OK;
+    pf_fault_set(&fault, "look whether the file is whole",
+                 "the last line has no line end, as if the file had been cut off");
+    return pf_reader_report(reader, PF_SEVERITY_WARNING, place, &fault);
+}
+
 static pf_status refuse_row(pf_reader *reader)
 {
     pf_fault fault;
@@ -220,11 +242,14 @@ static pf_status on_row(void *context, const pf_row *row)
     reader->row = row;
     if (row->header) {
         reader->style.delimiter = pf_table_delimiter(reader->table);
+        reader->header_line = row->line;
         pf_status status = pf_header_take(reader);
         pf_curves_columns(reader);
         return status;
     }
-    if (reader->kind == PF_KIND_UNKNOWN || is_blank_row(row)) return PF_OK;
+    if (is_blank_row(row)) return PF_OK;
+    *(row->wrong ? &reader->some_odd : &reader->some_even) = true;
+    if (reader->kind == PF_KIND_UNKNOWN) return PF_OK;
     if (reader->units_may_follow && !row->wrong) {
         bool taken = false;
         reader->units_may_follow = false;
@@ -294,6 +319,8 @@ static pf_status finish(pf_reader *reader)
 {
     pf_status status = reader->broken;
     if (status == PF_OK) status = pf_table_end(reader->table);
+    if (status == PF_OK) status = judge_header(reader);
+    if (status == PF_OK) status = warn_cut_short(reader);
     if (status == PF_OK) status = pf_curves_finish(reader);
     if (status != PF_OK) status = report_end(reader, status);
     if (status != PF_OK) return status;

@@ -35,6 +35,9 @@ typedef struct pf_reader {
     char *header_text;             /* what the columns' names point into */
     bool units_may_follow;         /* the next row may be a row of units */
 
+    size_t header_line;
+    bool some_even, some_odd; /* some row has as many cells as the header; some has not */
+
     /* of the row at hand */
     const pf_row *row;
     bool row_refused;

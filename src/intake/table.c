@@ -36,6 +36,7 @@ struct pf_table {
     size_t count, cell_capacity;
     size_t row_line, row_bytes;
     size_t cell_line; /* on which the cell being read begins */
+    bool cut_short;   /* the last line has no line end */
     bool open;        /* a row has begun and not ended: the next line belongs to a quoted cell */
 };
 
@@ -80,6 +81,11 @@ const pf_table_fault *pf_table_fault_of(const pf_table *table)
 char pf_table_delimiter(const pf_table *table)
 {
     return table->delimiter;
+}
+
+bool pf_table_cut_short(const pf_table *table)
+{
+    return table->cut_short;
 }
 
 size_t pf_table_lines(const pf_table *table)
@@ -344,8 +350,10 @@ pf_status pf_table_feed(pf_table *table, const char *bytes, size_t length)
 
 pf_status pf_table_end(pf_table *table)
 {
-    if (table->status == PF_OK && table->carry.length > 0)
+    if (table->status == PF_OK && table->carry.length > 0) {
+        table->cut_short = table->carry.text[table->carry.length - 1] != '\r';
         take_line(table, table->carry.text, table->carry.length, false);
+    }
     pf_buffer_reset(&table->carry);
     if (table->status == PF_OK && table->open &&
         csv_fini(&table->parser, on_cell, on_row, table) != 0)

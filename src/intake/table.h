@@ -61,6 +61,9 @@ const pf_table_fault *pf_table_fault_of(const pf_table *table);
 /* `,`, `;` or tab; 0 before the header was seen. */
 char pf_table_delimiter(const pf_table *table);
 
+/* Whether the last line ended without a line end, as that of a file that was cut off. */
+bool pf_table_cut_short(const pf_table *table);
+
 /* The physical lines so far. */
 size_t pf_table_lines(const pf_table *table);
 
