@@ -1,0 +1,175 @@
+/* command_rank.c: passfet rank PROFILE… */
+#include "base/memory.h"
+#include "cli/cards.h"
+#include "cli/commands.h"
+
+#include <passfet/ranking.h>
+#include <passfet/report.h>
+#include <string.h>
+
+const pf_option pf_rank_options[] = {
+    {"sort", "KEY[,KEY...]",
+     "order within a verdict: margin, loss, junction, running, price, part"},
+    {"top", "N", "show the first N parts only"},
+    {"where", "CONDITION", "only parts that meet it: vds_max>=80, package=LFP8; repeatable"},
+    {"capture", "FILE", "a measured waveform to evaluate as well; repeatable"},
+    {"derating", "FILE", "derating rules of your own, before the built-in ones"},
+    {"as-of", "DATE", "with the ratings known at that date or UTC time"},
+    {"reviewed", NULL, "only ratings that a second person accepted"},
+    {"format", "FORMAT", "table (the default), csv or json"},
+    {"help", NULL, "this text"},
+    {NULL, NULL, NULL},
+};
+
+/* Everything that the options say. */
+typedef struct request {
+    pf_condition condition[PF_OPTIONS_MAX];
+    size_t condition_count;
+    pf_sort_key key[PF_SORT_COUNT];
+    size_t key_count;
+    size_t top;
+    void (*write)(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
+    pf_query query;
+} request;
+
+static int read_keys(const pf_cli *cli, const char *text, request *on)
+{
+    while (text && *text) {
+        char name[32];
+        size_t length = strcspn(text, ",");
+        snprintf(name, sizeof name, "%.*s", (int)length, text);
+        if (on->key_count == PF_SORT_COUNT ||
+            pf_sort_key_read(name, &on->key[on->key_count++]) != PF_OK)
+            return pf_usage(
+                cli, "--sort: `%s` is no key: margin, loss, junction, running, price, part", name);
+        text += length + (text[length] == ',');
+    }
+    return PF_EXIT_DONE;
+}
+
+static int read_conditions(const pf_cli *cli, const pf_arguments *arguments, request *on)
+{
+    pf_error error = {0};
+    for (size_t i = 0; i < arguments->given_count; i++) {
+        if (strcmp(arguments->given[i].name, "where") != 0) continue;
+        if (pf_condition_read(arguments->given[i].value, &on->condition[on->condition_count++],
+                              &error) != PF_OK)
+            return pf_usage(cli, "--where: %s", error.text);
+    }
+    return PF_EXIT_DONE;
+}
+
+static int read_format(const pf_cli *cli, const char *format, request *on)
+{
+    on->write = pf_report_table;
+    if (!format || strcmp(format, "table") == 0) return PF_EXIT_DONE;
+    if (strcmp(format, "csv") == 0)
+        on->write = pf_report_csv;
+    else if (strcmp(format, "json") == 0)
+        on->write = pf_report_json;
+    else
+        return pf_usage(cli, "--format takes table, csv or json, not `%s`", format);
+    return PF_EXIT_DONE;
+}
+
+static int read_request(const pf_cli *cli, const pf_arguments *arguments, request *on)
+{
+    const char *top = pf_argument(arguments, "top");
+    *on = (request){.query = {.as_of = pf_argument(arguments, "as-of"),
+                              .reviewed_only = pf_argument(arguments, "reviewed") != NULL,
+                              .as_stored = true}};
+    int exit_status = read_keys(cli, pf_argument(arguments, "sort"), on);
+    if (exit_status == PF_EXIT_DONE) exit_status = read_conditions(cli, arguments, on);
+    if (exit_status == PF_EXIT_DONE)
+        exit_status = read_format(cli, pf_argument(arguments, "format"), on);
+    if (exit_status == PF_EXIT_DONE && top && !pf_count_read(cli, "top", top, 1, &on->top))
+        exit_status = PF_EXIT_USAGE;
+    return exit_status;
+}
+
+static bool is_wanted(const request *on, const pf_part *part)
+{
+    for (size_t i = 0; i < on->condition_count; i++)
+        if (!pf_condition_met(&on->condition[i], part)) return false;
+    return true;
+}
+
+static pf_status add_parts(pf_cursor *cursor, const request *on, unsigned remarks,
+                           pf_ranking *ranking, pf_error *error)
+{
+    pf_stored_part stored;
+    bool more = true;
+    pf_scratch *scratch = pf_scratch_new();
+    pf_status status = scratch ? PF_OK : PF_NO_MEMORY;
+    pf_stored_part_init(&stored);
+    while (status == PF_OK) {
+        status = pf_cursor_next(cursor, &stored, &more, error);
+        if (status != PF_OK || !more) break;
+        if (!is_wanted(on, &stored.part)) continue;
+        bool unreviewed = stored.facts.review != PF_ACCEPTED;
+        status = pf_ranking_add(ranking, &stored.part,
+                                remarks | (unreviewed ? PF_REMARK_UNREVIEWED : 0), scratch);
+    }
+    pf_stored_part_clear(&stored);
+    pf_scratch_free(scratch);
+    return status;
+}
+
+static pf_status evaluate(pf_store *store, const request *on, unsigned remarks, pf_ranking *ranking,
+                          char *revision, pf_error *error)
+{
+    pf_cursor *cursor = NULL;
+    pf_status status = pf_store_read_begin(store, error);
+    if (status != PF_OK) return status;
+    status = pf_store_revision_name(store, on->query.as_of, revision, error);
+    if (status == PF_OK) status = pf_cursor_open(store, &on->query, &cursor, error);
+    if (status == PF_OK) {
+        status = add_parts(cursor, on, remarks, ranking, error);
+        pf_cursor_close(cursor);
+    }
+    pf_store_read_end(store);
+    if (status == PF_OK) status = pf_ranking_sort(ranking, on->key, on->key_count);
+    return status;
+}
+
+static bool any_stall(const pf_cards *cards)
+{
+    for (size_t i = 0; i < cards->count; i++)
+        if (pf_plan_stall(cards->plan[i])) return true;
+    return false;
+}
+
+static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_cards *cards)
+{
+    char revision[PF_REVISION_NAME_ROOM];
+    pf_error error = {0};
+    pf_ranking ranking;
+    pf_ranking_init(&ranking, (const pf_plan *const *)cards->plan, cards->count);
+    pf_status status = evaluate(store, on, cards->remarks, &ranking, revision, &error);
+    int exit_status = status == PF_OK ? PF_EXIT_DONE : pf_fail(cli, status, &error);
+    if (status == PF_OK) {
+        const pf_report_source source = {cli->database, revision, on->top};
+        on->write(cli->out, &ranking, &source);
+        if (any_stall(cards) || ranking.tally[PF_PASS] == 0) exit_status = PF_EXIT_NO;
+    }
+    pf_ranking_clear(&ranking);
+    return exit_status;
+}
+
+int pf_command_rank(const pf_cli *cli, const pf_arguments *arguments)
+{
+    request on;
+    pf_cards cards;
+    pf_store *store;
+    pf_error error = {0};
+    int exit_status = read_request(cli, arguments, &on);
+    if (exit_status == PF_EXIT_DONE)
+        exit_status =
+            pf_cards_read(cli, arguments, arguments->operand, arguments->operand_count, &cards);
+    if (exit_status != PF_EXIT_DONE) return exit_status;
+    pf_status status = pf_cli_open(cli, PF_STORE_READ, &store, &error);
+    exit_status = status == PF_OK ? rank(cli, store, &on, &cards) : pf_fail(cli, status, &error);
+    pf_store_close(store);
+    pf_cards_clear(&cards);
+    return exit_status;
+}
