@@ -170,4 +170,95 @@ pf_status pf_store_import_part(pf_store *store, const pf_part_change *change, pf
 pf_status pf_store_import_commit(pf_store *store, int64_t *number, pf_error *error) PF_MUST_USE;
 void pf_store_import_rollback(pf_store *store);
 
+/* ---- taking back, exchanging ---- */
+
+/* Takes one import (or undo, or merge) back as a new entry: every part that it changed gets a new
+** revision that states what the part stated before; a part that it brought in is withdrawn, its
+** history stays. PF_NOT_FOUND for an entry that is not there, PF_BAD_INPUT for a review, for one that
+** is undone already, and where a later import changed one of its parts (undo that one first). */
+pf_status pf_store_undo(pf_store *store, int64_t entry, const pf_import_facts *facts,
+                        int64_t *number, pf_error *error) PF_MUST_USE;
+
+typedef enum pf_prefer {
+    PF_PREFER_NONE,
+    PF_PREFER_OURS,
+    PF_PREFER_THEIRS,
+    PF_PREFER_NEWER
+} pf_prefer;
+
+typedef struct pf_merge_summary {
+    size_t added;     /* parts that were not here */
+    size_t unchanged; /* both state the same */
+    size_t forward;   /* theirs goes on from what was here: taken */
+    size_t ahead;     /* ours goes on from what is there: kept */
+    size_t conflicts; /* changed on both sides, */
+    size_t taken;     /* of which theirs was taken */
+} pf_merge_summary;
+
+/* One part that both sides changed; take says whether theirs will be taken. */
+typedef pf_status pf_conflict_visitor(void *context, const pf_stored_part *ours,
+                                      const pf_stored_part *theirs, bool take, pf_error *error);
+
+/* Takes the parts of another database as one entry. Part by part, history decides: where one side's
+** newest state is an older state of the other, the other goes on from it and there is no conflict.
+** True conflicts are shown to visit (may be NULL). With PF_PREFER_NONE any conflict is PF_BAD_INPUT
+** after all were shown, and nothing is stored. NEWER: the later revision, ours on a tie. *already as
+** in pf_store_import_begin. */
+pf_status pf_store_merge(pf_store *store, pf_store *other, const pf_import_facts *facts,
+                         pf_prefer prefer, pf_conflict_visitor *visit, void *context,
+                         pf_merge_summary *summary, int64_t *already, int64_t *number,
+                         pf_error *error) PF_MUST_USE;
+
+/* ---- history and review ---- */
+
+typedef struct pf_review_facts {
+    const char *author, *time, *why;
+    bool accept; /* false: questioned */
+    int64_t entry;
+} pf_review_facts;
+
+/* One revision of a part, for a visitor; everything is borrowed until it returns. */
+typedef struct pf_history_step {
+    const pf_stored_part *now;
+    const pf_stored_part *before; /* NULL for the first revision and behind a withdrawal */
+    bool withdrawn;               /* an undo took the part out */
+    const char *kind;             /* of the entry: "import", "undo", "merge" */
+    const char *why;              /* NULL where not said */
+    const char *files;            /* names and SHA-256, "; " between; NULL for none */
+    const pf_review_facts *review;
+    size_t review_count;
+} pf_history_step;
+
+typedef pf_status pf_history_visitor(void *context, const pf_history_step *step, pf_error *error);
+
+/* All revisions of a part ("name" or "maker/name"; also one that is withdrawn), oldest first. A
+** status other than PF_OK from the visitor ends the walk and is returned. */
+pf_status pf_store_history(pf_store *store, const char *name, pf_history_visitor *visit,
+                           void *context, pf_error *error) PF_MUST_USE;
+
+/* What differs between two parts, field by field and curve by curve: texts for people, with units.
+** before or after is "" where not stated. */
+typedef void pf_difference_visitor(void *context, const char *what, const char *before,
+                                   const char *after);
+void pf_part_differences(const pf_part *before, const pf_part *after, pf_difference_visitor *visit,
+                         void *context);
+
+/* Accepts or questions the newest revision of a part, as an entry of its own. Who made one of the
+** revisions since the last accepted one cannot accept: PF_BAD_INPUT. Letter case and blanks around a
+** name do not make a second person. facts->entry receives the number. */
+pf_status pf_store_review(pf_store *store, const char *name, pf_review_facts *facts,
+                          pf_error *error) PF_MUST_USE;
+
+/* ---- backup and health ---- */
+
+/* A consistent copy into a new file, while others work, verified after writing. PF_FILE where the
+** file exists or cannot be written; nothing is left behind then. */
+pf_status pf_store_backup(pf_store *store, const char *path, pf_error *error) PF_MUST_USE;
+
+/* Checks everything: SQLite's structure, references, every row, packed curves against JSON, hashes
+** of all states and the chain over the log. Each finding is a sentence; *findings counts them. */
+typedef void pf_finding_visitor(void *context, const char *sentence);
+pf_status pf_store_verify(pf_store *store, pf_finding_visitor *visit, void *context,
+                          size_t *findings, pf_error *error) PF_MUST_USE;
+
 #endif

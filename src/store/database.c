@@ -32,9 +32,11 @@ pf_status pf_store_damaged(pf_store *store, pf_error *error, const char *what)
 
 static pf_status fail_busy(pf_store *store, pf_error *error)
 {
+    char wait[PF_UNIT_ROOM];
+    pf_value_print(wait, store->wait_ms / 1000.0, PF_TIME, 3);
     return pf_error_set(error, PF_BUSY,
-                        "%s: other processes kept the database busy for %g s; try again",
-                        store->path, store->wait_ms / 1000.0);
+                        "%s: other processes kept the database busy for %s; try again", store->path,
+                        wait);
 }
 
 pf_status pf_store_fail(pf_store *store, int code, pf_error *error)

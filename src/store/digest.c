@@ -64,7 +64,7 @@ static void add_fields(const pf_field_order *order, const pf_part *part, pf_buff
     for (size_t i = 0; i < order->texts; i++) {
         const pf_text_field *field = &text[order->text[i]];
         const char *value = pf_part_text_value(part, field);
-        if (!value) continue;
+        if (!value || !*value) continue;
         add_name(to, field->name);
         add_name(to, value);
     }

@@ -50,29 +50,51 @@ static pf_status read_all(pf_store *store, const char *as_of, finding *found,
     return status;
 }
 
-static pf_status find(pf_store *store, const char *name, const char *maker, size_t maker_length,
-                      const char *as_of, finding *found, pf_stored_part *stored, pf_error *error)
+/* Tries the whole name, then each `/` as the end of a maker's name, until something is there. */
+static pf_status find(pf_store *store, const char *name, const char *as_of, finding *found,
+                      pf_stored_part *stored, pf_error *error)
 {
-    *found = (finding){0};
-    pf_status status = collect(store, name, maker, maker_length, found, error);
-    return status == PF_OK ? read_all(store, as_of, found, stored, error) : status;
+    const char *bar = NULL;
+    pf_status status = PF_OK;
+    do {
+        *found = (finding){0};
+        status = collect(store, bar ? bar + 1 : name, bar ? name : NULL,
+                         bar ? (size_t)(bar - name) : 0, found, error);
+        if (status == PF_OK) status = read_all(store, as_of, found, stored, error);
+        bar = strchr(bar ? bar + 1 : name, '/');
+    } while (status == PF_OK && !found->there && bar);
+    return status;
+}
+
+static pf_status several(const finding *found, const char *name, pf_error *error)
+{
+    return pf_error_set(error, PF_BAD_INPUT,
+                        "several makers share the part number %s (%s): write maker/%s", name,
+                        found->makers, name);
 }
 
 pf_status pf_store_part_find(pf_store *store, const char *name, const char *as_of,
                              pf_stored_part *stored, pf_error *error)
 {
     finding found;
-    pf_status status = find(store, name, NULL, 0, as_of, &found, stored, error);
-    for (const char *bar = strchr(name, '/'); status == PF_OK && !found.there && bar;
-         bar = strchr(bar + 1, '/'))
-        status = find(store, bar + 1, name, (size_t)(bar - name), as_of, &found, stored, error);
+    pf_status status = find(store, name, as_of, &found, stored, error);
     if (status != PF_OK) return status;
     if (found.there == 0)
         return pf_error_set(error, PF_NOT_FOUND, "%s: there is no part %s%s%s", store->path, name,
                             as_of ? " as of " : "", as_of ? as_of : "");
-    if (found.there > 1)
-        return pf_error_set(error, PF_BAD_INPUT,
-                            "several makers share the part number %s (%s): write maker/%s", name,
-                            found.makers, name);
-    return PF_OK;
+    return found.there > 1 ? several(&found, name, error) : PF_OK;
+}
+
+pf_status pf_part_id_find(pf_store *store, const char *name, int64_t *id, pf_error *error)
+{
+    finding found;
+    pf_stored_part stored;
+    pf_stored_part_init(&stored);
+    pf_status status = find(store, name, NULL, &found, &stored, error);
+    if (status == PF_OK && found.there > 1) status = several(&found, name, error);
+    if (status == PF_OK && found.there == 0 && found.ids != 1)
+        status = pf_error_set(error, PF_NOT_FOUND, "%s: there is no part %s", store->path, name);
+    *id = found.there == 1 ? stored.facts.part_id : found.ids ? found.id[0] : 0;
+    pf_stored_part_clear(&stored);
+    return status;
 }

@@ -1,6 +1,6 @@
 /* import.c: an import: one entry, in which changes become states of parts. */
 #include "base/memory.h"
-#include "base/number.h"
+#include "store/judge.h"
 #include "store/log.h"
 #include "store/packed.h"
 #include "store/write.h"
@@ -8,8 +8,7 @@
 #include <stdio.h>
 #include <string.h>
 
-/* Whether an entry holds: it was not undone, or its undo was itself undone, and so on. */
-static pf_status holds(pf_store *store, int64_t entry, bool *holding, pf_error *error)
+pf_status pf_entry_holds(pf_store *store, int64_t entry, bool *holding, pf_error *error)
 {
     *holding = true;
     for (;;) {
@@ -40,34 +39,45 @@ static pf_status find_key(pf_store *store, const char *key, int64_t *found, pf_e
     while (status == PF_OK && !*found &&
            (status = pf_store_step(store, statement, &row, error)) == PF_OK && row) {
         int64_t entry = sqlite3_column_int64(statement, 0);
-        status = holds(store, entry, &holding, error);
+        status = pf_entry_holds(store, entry, &holding, error);
         if (holding) *found = entry;
     }
     sqlite3_reset(statement);
     return status;
 }
 
-pf_status pf_store_import_begin(pf_store *store, const pf_import_facts *facts, int64_t *already,
-                                pf_error *error)
+static pf_status begin(pf_store *store, const char *kind, const pf_import_facts *facts,
+                       int64_t *already, pf_error *error)
 {
-    pf_log_facts log = {.kind = "import",
+    pf_log_facts log = {.kind = kind,
                         .author = facts->author,
                         .time = facts->time,
                         .why = facts->why,
                         .key = facts->key,
                         .file = facts->file,
                         .file_count = facts->file_count};
+    pf_status status = pf_write_begin(store, error);
+    if (status == PF_OK && facts->key) status = find_key(store, facts->key, already, error);
+    if (status != PF_OK || *already) return status;
+    if (pf_text_copy(&store->import.why, facts->why) != PF_OK)
+        return pf_store_no_memory(store, error);
+    return pf_write_entry(store, &log, error);
+}
+
+pf_status pf_import_begin_as(pf_store *store, const char *kind, const pf_import_facts *facts,
+                             int64_t *already, pf_error *error)
+{
+    bool open = store->import.open;
     *already = 0;
-    pf_status status = pf_write_begin(store, &log, error);
-    if (status == PF_OK && pf_text_copy(&store->import.why, facts->why) != PF_OK) {
-        pf_store_import_rollback(store);
-        status = pf_store_no_memory(store, error);
-    }
-    if (status != PF_OK || !facts->key) return status;
-    status = find_key(store, facts->key, already, error);
-    if (*already == store->import.entry) *already = 0;
-    if (status != PF_OK || *already) pf_store_import_rollback(store);
+    pf_status status = begin(store, kind, facts, already, error);
+    if (!open && (status != PF_OK || *already)) pf_store_import_rollback(store);
     return status;
+}
+
+pf_status pf_store_import_begin(pf_store *store, const pf_import_facts *facts, int64_t *already,
+                                pf_error *error)
+{
+    return pf_import_begin_as(store, "import", facts, already, error);
 }
 
 /* One part of the right name, with what speaks for it. */
@@ -128,46 +138,6 @@ static bool states_only_curves(const pf_part_change *change)
     return !change->ratings_given && !change->polarity_given && !change->rdson_given;
 }
 
-/* A part always states these, whether it is new or a change would take them away. */
-static pf_status judge_needs(const pf_part *part, bool curves_only, pf_error *error)
-{
-    const char *lacks = part->polarity == PF_POLARITY_NONE ? "polarity"
-                        : !pf_is_stated(part->vds_max_V)   ? "vds_max"
-                        : !pf_is_stated(part->tj_max_degC) ? "tj_max"
-                                                           : NULL;
-    if (!lacks) return PF_OK;
-    if (curves_only)
-        return pf_error_set(error, PF_NOT_FOUND,
-                            "there is no part %s: import its ratings first or in the same run",
-                            part->name);
-    return pf_error_set(error, PF_BAD_INPUT, "part %s states no %s, which every part needs",
-                        part->name, lacks);
-}
-
-/* The second wall stands in the tables; this one answers before anything is written. */
-static pf_status judge_values(const pf_part *part, pf_error *error)
-{
-    size_t count;
-    const pf_rating_field *field = pf_rating_fields(&count);
-    for (size_t i = 0; i < count; i++) {
-        double value = pf_part_rating_value(part, &field[i]);
-        if (pf_is_stated(value) && !(value >= field[i].lowest && value <= field[i].highest))
-            return pf_error_set(error, PF_BAD_INPUT, "part %s: %s %g must lie between %g and %g %s",
-                                part->name, field[i].csv, value, field[i].lowest, field[i].highest,
-                                pf_quantity_unit(field[i].quantity));
-    }
-    if (part->vth_min_V > part->vth_max_V)
-        return pf_error_set(error, PF_BAD_INPUT, "part %s: vth_min must not be above vth_max",
-                            part->name);
-    for (size_t i = 0; i < part->soa_count; i++)
-        if (part->soa[i].vds_V > 1.1 * part->vds_max_V)
-            return pf_error_set(error, PF_BAD_INPUT,
-                                "part %s: the SOA goes to %g V, more than a tenth beyond vds_max",
-                                part->name, part->soa[i].vds_V);
-    const char *wrong = pf_curves_judge(part);
-    return wrong ? pf_error_set(error, PF_BAD_INPUT, "part %s: %s", part->name, wrong) : PF_OK;
-}
-
 static const pf_text_field *text_field(const char *name)
 {
     size_t count;
@@ -226,9 +196,9 @@ static pf_status merge(pf_store *store, const pf_part_change *change, pf_part *m
     bool there = id && !target->withdrawn;
     if (there) before = &store->current.part;
     if (apply(before, change, merged) != PF_OK) return pf_store_no_memory(store, error);
-    status = judge_needs(merged, !there && states_only_curves(change), error);
+    status = pf_judge_needs(merged, !there && states_only_curves(change), error);
     if (status == PF_OK) status = settle_reason(store, before, merged, error);
-    if (status == PF_OK) status = judge_values(merged, error);
+    if (status == PF_OK) status = pf_judge_values(merged, error);
     *effect = !there                          ? PF_EFFECT_NEW
               : pf_part_equal(before, merged) ? PF_EFFECT_UNCHANGED
                                               : PF_EFFECT_CHANGED;

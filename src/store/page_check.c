@@ -1,8 +1,8 @@
 /* page_check.c: checksums under SQLite's pages; all else is handed on to the default file layer. */
 #include "store/page_check.h"
 #include "base/memory.h"
+#include "store/words.h"
 
-#include <stdint.h>
 #include <stdio.h>
 #include <string.h>
 
@@ -29,35 +29,33 @@ static sqlite3_file *below(sqlite3_file *file)
     return (sqlite3_file *)(void *)((checked_file *)(void *)file + 1);
 }
 
-/* Four lanes, so that the multiplications overlap. Every step maps a lane one-to-one for a given
-** word, so that a change within one word always shows. */
-static uint64_t checksum(const unsigned char *bytes, size_t length)
+static uint64_t mix(uint64_t lane, uint64_t word)
 {
-    const uint64_t factor = UINT64_C(0x9E3779B97F4A7C15);
-    uint64_t lane[4] = {1, 2, 3, 4}, word;
-    for (size_t at = 0, i = 0; at + 8 <= length; at += 8, i = (i + 1) & 3) {
-        memcpy(&word, bytes + at, 8);
-        lane[i] = (lane[i] ^ word) * factor;
-        lane[i] ^= lane[i] >> 29;
-    }
-    uint64_t sum = length;
-    for (size_t i = 0; i < 4; i++) {
-        sum = (sum ^ lane[i]) * factor;
-        sum ^= sum >> 32;
-    }
-    return sum;
+    lane = (lane ^ word) * UINT64_C(0x9E3779B97F4A7C15);
+    return lane ^ lane >> 29;
 }
 
-/* Little-endian, so that a file moves between machines. */
-static void write_sum(unsigned char *to, uint64_t sum)
+/* Four lanes, so that the multiplications overlap. Every step maps a lane one-to-one for a given
+** word and one-to-one from words for a given lane, so that a change within one word always shows. */
+static uint64_t checksum(const void *bytes, size_t length)
 {
-    for (int i = 0; i < PF_CHECK_BYTES; i++)
-        to[i] = (unsigned char)(sum >> (8 * i));
+    pf_words words = {bytes, length / 8};
+    uint64_t a = 1, b = 2, c = 3, d = 4;
+    while (pf_words_left(&words) >= 4) {
+        a = mix(a, pf_words_next(&words));
+        b = mix(b, pf_words_next(&words));
+        c = mix(c, pf_words_next(&words));
+        d = mix(d, pf_words_next(&words));
+    }
+    while (pf_words_left(&words))
+        a = mix(a, pf_words_next(&words));
+    return mix(mix(mix(mix(length, a), b), c), d);
 }
 
 static void sum_of_page(const void *page, int bytes, unsigned char sum[PF_CHECK_BYTES])
 {
-    write_sum(sum, checksum(page, (size_t)bytes - PF_CHECK_BYTES));
+    uint64_t word = pf_word_turn(checksum(page, (size_t)bytes - PF_CHECK_BYTES));
+    memcpy(sum, &word, PF_CHECK_BYTES);
 }
 
 static int is_page(sqlite3_file *file, int amount, sqlite3_int64 offset)

@@ -50,21 +50,23 @@ static void add_where(const pf_query *query, bool range, const char *id, pf_buff
 }
 
 /* The newest state of every part whose entry is not behind ?1. */
-static void write_past(const pf_store *store, const pf_query *query, bool range, pf_buffer *sql)
+static void write_past(const pf_store *store, const pf_query *query, bool range, bool reviews,
+                       pf_buffer *sql)
 {
-    pf_record_select(store, "part", "id", "r.entry <= ?1", sql);
+    pf_record_select(store, "part", "id", reviews ? "r.entry <= ?1" : NULL, sql);
     add_where(query, range, "id", sql);
     pf_buffer_text(sql, " AND p.entry <= ?1 UNION ALL ");
-    pf_record_select(store, "past", "part", "r.entry <= ?1", sql);
+    pf_record_select(store, "past", "part", reviews ? "r.entry <= ?1" : NULL, sql);
     add_where(query, range, "part", sql);
     pf_buffer_text(sql, " AND p.number = (SELECT max(q.number) FROM past q WHERE q.part = p.part "
                         "AND q.entry <= ?1) AND (SELECT entry FROM part WHERE id = p.part) > ?1");
     pf_buffer_text(sql, query->as_stored ? " ORDER BY part_id" : " ORDER BY name, maker");
 }
 
-static void write_now(const pf_store *store, const pf_query *query, bool range, pf_buffer *sql)
+static void write_now(const pf_store *store, const pf_query *query, bool range, bool reviews,
+                      pf_buffer *sql)
 {
-    pf_record_select(store, "part", "id", "1", sql);
+    pf_record_select(store, "part", "id", reviews ? "1" : NULL, sql);
     add_where(query, range, "id", sql);
     pf_buffer_text(sql,
                    query->as_stored ? " ORDER BY p.id" : " ORDER BY p.name, ifnull(p.maker, '')");
@@ -74,12 +76,15 @@ static pf_status prepare(pf_store *store, const pf_query *query, bool range, pf_
                          pf_error *error)
 {
     pf_buffer sql;
+    int64_t reviews; /* looking for one per part costs as much as reading its ratings */
+    pf_status status = pf_store_number(store, "SELECT 1 FROM review LIMIT 1", 0, &reviews, error);
+    if (status != PF_OK) return status;
     pf_buffer_init(&sql, PF_SQL_MAX);
     if (query->as_of)
-        write_past(store, query, range, &sql);
+        write_past(store, query, range, reviews != 0, &sql);
     else
-        write_now(store, query, range, &sql);
-    pf_status status = pf_buffer_status(&sql);
+        write_now(store, query, range, reviews != 0, &sql);
+    status = pf_buffer_status(&sql);
     if (status == PF_OK)
         status = pf_store_prepare(store, pf_buffer_string(&sql), &cursor->statement, error);
     else
@@ -146,11 +151,17 @@ pf_status pf_part_load(pf_store *store, int64_t part_id, const char *as_of, pf_s
     return status;
 }
 
-pf_status pf_cursor_next(pf_cursor *cursor, pf_stored_part *stored, bool *more, pf_error *error)
+pf_status pf_cursor_next_extra(pf_cursor *cursor, pf_stored_part *stored, pf_record_extra *extra,
+                               bool *more, pf_error *error)
 {
     pf_status status = pf_store_step(cursor->store, cursor->statement, more, error);
     if (status != PF_OK || !*more) return status;
-    return pf_record_read(cursor->store, cursor->statement, stored, NULL, error);
+    return pf_record_read(cursor->store, cursor->statement, stored, extra, error);
+}
+
+pf_status pf_cursor_next(pf_cursor *cursor, pf_stored_part *stored, bool *more, pf_error *error)
+{
+    return pf_cursor_next_extra(cursor, stored, NULL, more, error);
 }
 
 void pf_cursor_close(pf_cursor *cursor)

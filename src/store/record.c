@@ -37,10 +37,15 @@ void pf_record_select(const pf_store *store, const char *table, const char *id, 
     const pf_rating_field *rating = pf_rating_fields(&ratings);
     pf_buffer_print(sql,
                     "SELECT p.%s AS part_id, p.number AS number, p.entry, p.withdrawn, p.content, "
-                    "p.polarity, p.rdson, p.curves, c.packed, e.author, e.time, "
-                    "(SELECT r.verdict FROM review r WHERE r.part = p.%s AND r.number = p.number "
-                    "AND %s ORDER BY r.entry DESC LIMIT 1) AS verdict",
-                    id, id, reviews);
+                    "p.polarity, p.rdson, p.curves, c.packed, e.author, e.time, ",
+                    id);
+    if (reviews)
+        pf_buffer_print(sql,
+                        "(SELECT r.verdict FROM review r WHERE r.part = p.%s AND r.number = "
+                        "p.number AND %s ORDER BY r.entry DESC LIMIT 1) AS verdict",
+                        id, reviews);
+    else
+        pf_buffer_text(sql, "NULL AS verdict");
     for (size_t i = 0; i < texts; i++)
         pf_buffer_print(sql, ", %s AS %s", store->text_missing[i] ? "NULL" : text[i].name,
                         text[i].name);
@@ -65,26 +70,39 @@ static void *take(arena *from, size_t bytes)
     return piece;
 }
 
-static char *take_text(arena *from, sqlite3_stmt *row, int column)
+/* A text column, borrowed from SQLite until the row moves. A blank one is not stated. */
+typedef struct text_at {
+    const void *bytes; /* NULL: not stated */
+    size_t length;
+} text_at;
+
+static text_at text_of(sqlite3_stmt *row, int column)
 {
-    size_t length = (size_t)sqlite3_column_bytes(row, column);
-    const void *text = sqlite3_column_blob(row, column);
-    char *copy = take(from, length + 1);
-    if (length) memcpy(copy, text, length);
-    copy[length] = '\0';
+    const void *bytes = sqlite3_column_blob(row, column);
+    return (text_at){bytes, bytes ? (size_t)sqlite3_column_bytes(row, column) : 0};
+}
+
+static bool is_sound(text_at text)
+{
+    return !text.bytes || !memchr(text.bytes, 0, text.length);
+}
+
+static char *take_text(arena *from, text_at text)
+{
+    if (!text.bytes) return NULL;
+    char *copy = take(from, text.length + 1);
+    memcpy(copy, text.bytes, text.length);
+    copy[text.length] = '\0';
     return copy;
 }
 
-/* Bytes that a text column needs; 0 for NULL. *sound is cleared where it is no text. */
-static size_t text_room(sqlite3_stmt *row, int column, bool *sound)
-{
-    int type = sqlite3_column_type(row, column);
-    if (type == SQLITE_NULL) return 0;
-    size_t length = (size_t)sqlite3_column_bytes(row, column);
-    const void *text = sqlite3_column_blob(row, column);
-    if (type != SQLITE_TEXT || (length && (!text || memchr(text, 0, length)))) *sound = false;
-    return length + 1;
-}
+/* What the row holds, found in the first pass. */
+typedef struct contents {
+    text_at text[PF_FIELDS_MAX], author, time;
+    pf_packed_counts counts;
+    const void *packed;
+    size_t packed_bytes, room;
+} contents;
 
 static size_t items_room(const pf_packed_counts *counts)
 {
@@ -130,73 +148,64 @@ static bool read_rdson(sqlite3_stmt *row, pf_part *part)
     return !json || pf_rdson_read(json, part);
 }
 
+/* SQLite reads NULL as 0, so that only a 0 needs a second look. */
 static bool read_ratings(sqlite3_stmt *row, int column, pf_part *part)
 {
     size_t count;
     const pf_rating_field *field = pf_rating_fields(&count);
     for (size_t i = 0; i < count; i++, column++) {
-        int type = sqlite3_column_type(row, column);
-        double value = type == SQLITE_NULL ? PF_NONE : sqlite3_column_double(row, column);
-        *pf_part_rating(part, &field[i]) = value;
-        if (type != SQLITE_NULL && !(value >= field[i].lowest && value <= field[i].highest))
-            return false;
+        double value = sqlite3_column_double(row, column);
+        bool stated = value != 0 || sqlite3_column_type(row, column) != SQLITE_NULL;
+        *pf_part_rating(part, &field[i]) = stated ? value : PF_NONE;
+        if (stated && !(value >= field[i].lowest && value <= field[i].highest)) return false;
     }
     return true;
 }
 
-static void read_texts(sqlite3_stmt *row, arena *from, pf_part *part)
-{
-    size_t count;
-    const pf_text_field *field = pf_text_fields(&count);
-    for (size_t i = 0; i < count; i++) {
-        int column = COLUMN_TEXTS + (int)i;
-        bool stated = sqlite3_column_type(row, column) != SQLITE_NULL;
-        *pf_part_text(part, &field[i]) = stated ? take_text(from, row, column) : NULL;
-    }
-}
-
 /* Room for everything that the row says; false where its texts or curves are none. */
-static bool measure(sqlite3_stmt *row, size_t texts, pf_packed_counts *counts, size_t *room)
+static bool measure(sqlite3_stmt *row, size_t texts, contents *found)
 {
-    bool sound = true;
-    const void *packed = sqlite3_column_blob(row, COLUMN_PACKED);
-    size_t length = (size_t)sqlite3_column_bytes(row, COLUMN_PACKED);
-    if (!pf_packed_count(packed, length, counts)) return false;
-    *room = items_room(counts);
-    for (size_t i = 0; i < texts; i++)
-        *room += text_room(row, COLUMN_TEXTS + (int)i, &sound);
-    size_t author = text_room(row, COLUMN_AUTHOR, &sound),
-           time = text_room(row, COLUMN_TIME, &sound);
-    *room += author + time;
-    return sound && author && time &&
-           sqlite3_column_bytes(row, COLUMN_CONTENT) == PF_DIGEST_BYTES &&
-           (sqlite3_column_type(row, COLUMN_CURVES) == SQLITE_NULL) == (length == 0);
+    found->packed = sqlite3_column_blob(row, COLUMN_PACKED);
+    found->packed_bytes = (size_t)sqlite3_column_bytes(row, COLUMN_PACKED);
+    if (!pf_packed_count(found->packed, found->packed_bytes, &found->counts)) return false;
+    found->author = text_of(row, COLUMN_AUTHOR);
+    found->time = text_of(row, COLUMN_TIME);
+    found->room = items_room(&found->counts) + found->author.length + found->time.length + 2;
+    bool sound = found->author.bytes && is_sound(found->author) && found->time.bytes &&
+                 is_sound(found->time);
+    for (size_t i = 0; i < texts; i++) {
+        found->text[i] = text_of(row, COLUMN_TEXTS + (int)i);
+        found->room += found->text[i].length + 1;
+        sound = sound && is_sound(found->text[i]);
+    }
+    return sound;
 }
 
-static void read_extra(sqlite3_stmt *row, pf_record_extra *extra)
+static void read_extra(sqlite3_stmt *row, const contents *found, pf_record_extra *extra)
 {
     extra->withdrawn = sqlite3_column_int(row, COLUMN_WITHDRAWN) != 0;
     extra->content = sqlite3_column_blob(row, COLUMN_CONTENT);
     extra->curves = sqlite3_column_int64(row, COLUMN_CURVES);
-    extra->packed = sqlite3_column_blob(row, COLUMN_PACKED);
-    extra->packed_bytes = (size_t)sqlite3_column_bytes(row, COLUMN_PACKED);
+    extra->packed = found->packed;
+    extra->packed_bytes = found->packed_bytes;
 }
 
-static bool fill(sqlite3_stmt *row, size_t texts, const pf_packed_counts *counts,
-                 pf_stored_part *stored)
+static bool fill(sqlite3_stmt *row, size_t texts, const contents *found, pf_stored_part *stored)
 {
+    size_t count;
+    const pf_text_field *field = pf_text_fields(&count);
     arena memory = {stored->memory};
     pf_part *part = &stored->part;
     pf_revision_facts *facts = &stored->facts;
-    take_curves(&memory, counts, part);
-    pf_curves_unpack(sqlite3_column_blob(row, COLUMN_PACKED),
-                     (size_t)sqlite3_column_bytes(row, COLUMN_PACKED), part);
-    read_texts(row, &memory, part);
+    take_curves(&memory, &found->counts, part);
+    pf_curves_unpack(found->packed, found->packed_bytes, part);
+    for (size_t i = 0; i < texts; i++)
+        *pf_part_text(part, &field[i]) = take_text(&memory, found->text[i]);
     facts->part_id = sqlite3_column_int64(row, COLUMN_ID);
     facts->number = sqlite3_column_int64(row, COLUMN_NUMBER);
     facts->entry = sqlite3_column_int64(row, COLUMN_ENTRY);
-    facts->author = take_text(&memory, row, COLUMN_AUTHOR);
-    facts->time = take_text(&memory, row, COLUMN_TIME);
+    facts->author = take_text(&memory, found->author);
+    facts->time = take_text(&memory, found->time);
     return part->name && read_polarity(row, &part->polarity) && read_rdson(row, part) &&
            read_ratings(row, COLUMN_TEXTS + (int)texts, part) && read_review(row, &facts->review);
 }
@@ -204,18 +213,17 @@ static bool fill(sqlite3_stmt *row, size_t texts, const pf_packed_counts *counts
 pf_status pf_record_read(pf_store *store, sqlite3_stmt *row, pf_stored_part *stored,
                          pf_record_extra *extra, pf_error *error)
 {
-    size_t room, texts = store->order.texts;
-    pf_packed_counts counts;
-    bool sound = measure(row, texts, &counts, &room);
-    if (sound && pf_grow((void **)&stored->memory, &stored->room, room + 1, 1) != PF_OK)
+    contents found;
+    bool sound = measure(row, store->order.texts, &found);
+    if (sound && pf_grow((void **)&stored->memory, &stored->room, found.room, 1) != PF_OK)
         return pf_store_no_memory(store, error);
-    if (!sound || !fill(row, texts, &counts, stored)) {
+    if (!sound || !fill(row, store->order.texts, &found, stored)) {
         char what[64];
         sqlite3_snprintf(sizeof what, what, "part %lld says what cannot be",
                          sqlite3_column_int64(row, COLUMN_ID));
         return pf_store_damaged(store, error, what);
     }
-    if (extra) read_extra(row, extra);
+    if (extra) read_extra(row, &found, extra);
     return PF_OK;
 }
 

@@ -25,7 +25,8 @@ pf_status pf_state_bind(pf_store *store, sqlite3_stmt *statement, const pf_part 
                         const pf_state_facts *facts, pf_error *error) PF_MUST_USE;
 
 /* Appends "SELECT … FROM table p …" without WHERE: what pf_record_read expects. id: the column of
-** the table that names the part. reviews: condition on reviews r, or "1". */
+** the table that names the part. reviews: condition on reviews r, or "1"; NULL where there are none
+** to look for. */
 void pf_record_select(const pf_store *store, const char *table, const char *id, const char *reviews,
                       pf_buffer *sql);
 

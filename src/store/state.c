@@ -25,23 +25,22 @@ static double soa_top(const pf_part *part)
     return top;
 }
 
-/* NULL binds as NULL. */
+/* NULL binds as NULL, and so does a blank text: it states nothing. */
 static int bind_text(sqlite3_stmt *statement, int at, const char *text)
 {
-    return sqlite3_bind_text(statement, at, text, -1, SQLITE_STATIC);
+    return sqlite3_bind_text(statement, at, text && *text ? text : NULL, -1, SQLITE_STATIC);
 }
 
 /* The columns of `own`, in its order. Not a number binds as NULL. */
 static int bind_own(sqlite3_stmt *statement, const pf_part *part, const pf_state_facts *facts)
 {
     int at = PF_STATE_PARAMETER, failed = 0;
-    const char *rdson = facts->rdson && *facts->rdson ? facts->rdson : NULL;
     failed |= sqlite3_bind_int64(statement, at++, facts->number);
     failed |= sqlite3_bind_int64(statement, at++, facts->entry);
     failed |= sqlite3_bind_int(statement, at++, facts->withdrawn);
     failed |= sqlite3_bind_blob(statement, at++, facts->content, PF_DIGEST_BYTES, SQLITE_STATIC);
     failed |= bind_text(statement, at++, pf_polarity_text(part->polarity));
-    failed |= bind_text(statement, at++, rdson);
+    failed |= bind_text(statement, at++, facts->rdson);
     failed |= sqlite3_bind_double(statement, at++, soa_top(part));
     failed |= facts->curves ? sqlite3_bind_int64(statement, at, facts->curves)
                             : sqlite3_bind_null(statement, at);

@@ -33,6 +33,34 @@ static const char *const texts[PF_SQL_COUNT] = {
                        "WHERE id = ?1",
     [PF_SQL_ADD_CURVE] = "INSERT INTO curve (packed) VALUES (?1)",
     [PF_SQL_ADD_CURVE_JSON] = "INSERT INTO curve_json (id, json) VALUES (?1, ?2)",
+    [PF_SQL_STATES_OF] = "SELECT id, number FROM part WHERE entry = ?1 "
+                         "UNION ALL SELECT part, number FROM past WHERE entry = ?1 ORDER BY 1",
+    [PF_SQL_CHANGED_SINCE] = "SELECT p.name, p.entry FROM past s JOIN part p ON p.id = s.part "
+                             "WHERE s.entry = ?1 AND s.content <> p.content ORDER BY p.name",
+    [PF_SQL_LOAD_PAST] = "@past WHERE p.part = ?1 AND p.number = ?2",
+    [PF_SQL_ALL_STATES] = "@past WHERE p.part = ?1 UNION ALL @select WHERE p.id = ?1 "
+                          "ORDER BY number",
+    [PF_SQL_KNEW] = "SELECT 1 FROM part p WHERE name = ?1 AND ifnull(maker, '') = ?2 AND "
+                    "(content = ?3 OR EXISTS (SELECT 1 FROM past q WHERE q.part = p.id AND "
+                    "q.content = ?3))",
+    [PF_SQL_PART_OF_MAKER] = "SELECT id, content FROM part WHERE name = ?1 AND "
+                             "ifnull(maker, '') = ?2",
+    [PF_SQL_UNSEEN_AUTHORS] =
+        "SELECT s.number, e.author FROM (SELECT number, entry FROM part WHERE id = ?1 UNION ALL "
+        "SELECT number, entry FROM past WHERE part = ?1) s JOIN entry e ON e.id = s.entry "
+        "WHERE s.number > ifnull((SELECT max(r.number) FROM review r WHERE r.part = ?1 AND "
+        "r.number < (SELECT number FROM part WHERE id = ?1) AND r.verdict = 'accept' AND "
+        "NOT EXISTS (SELECT 1 FROM review q WHERE q.part = ?1 AND q.number = r.number AND "
+        "q.entry > r.entry AND q.verdict = 'question')), 0)",
+    [PF_SQL_ADD_REVIEW] = "INSERT INTO review (entry, part, number, verdict) "
+                          "VALUES (?1, ?2, ?3, ?4)",
+    [PF_SQL_REVIEWS_OF] = "SELECT r.entry, r.verdict, e.author, e.time, e.why FROM review r "
+                          "JOIN entry e ON e.id = r.entry WHERE r.part = ?1 AND r.number = ?2 "
+                          "ORDER BY r.entry",
+    [PF_SQL_READ_JSON] = "SELECT json FROM curve_json WHERE id = ?1",
+    [PF_SQL_ENTRY_WORDS] = "SELECT kind, why, (SELECT group_concat(name || ' ' || sha256, '; ') "
+                           "FROM (SELECT name, sha256 FROM source WHERE entry = ?1 "
+                           "ORDER BY position)) FROM entry WHERE id = ?1",
 };
 
 /* Lists all columns of a state: `c` names, `v` parameters, `s` assignments. */
@@ -53,6 +81,8 @@ static void write_sql(const pf_store *store, const char *text, pf_buffer *sql)
         pf_buffer_add(sql, text, (size_t)(mark - text));
         if (strncmp(mark, "@select", 7) == 0)
             pf_record_select(store, "part", "id", "1", sql);
+        else if (strncmp(mark, "@past", 5) == 0)
+            pf_record_select(store, "past", "part", "1", sql);
         else
             add_list(mark[1], sql);
         text = mark + 1 + strspn(mark + 1, "abcdefghijklmnopqrstuvwxyz");

@@ -12,7 +12,7 @@
 
 #include <string.h>
 
-pf_status pf_write_begin(pf_store *store, const pf_log_facts *facts, pf_error *error)
+pf_status pf_write_begin(pf_store *store, pf_error *error)
 {
     pf_import *import = &store->import;
     if (import->open)
@@ -22,9 +22,13 @@ pf_status pf_write_begin(pf_store *store, const pf_log_facts *facts, pf_error *e
     import->open = true;
     import->broken = false;
     import->count = 0;
-    status = pf_log_add(store, facts, &import->entry, error);
-    if (status != PF_OK) pf_store_import_rollback(store);
-    return status;
+    import->entry = 0;
+    return PF_OK;
+}
+
+pf_status pf_write_entry(pf_store *store, const pf_log_facts *facts, pf_error *error)
+{
+    return pf_log_add(store, facts, &store->import.entry, error);
 }
 
 /* Stores the curves of a part in both forms; *id 0: it has none. store->packed holds them. */

@@ -13,9 +13,20 @@ typedef struct pf_target {
     bool withdrawn;
 } pf_target;
 
-/* Begins a transaction with an entry in it; takes the place of any error cleanup: after a failure
-** no transaction is open. */
-pf_status pf_write_begin(pf_store *store, const pf_log_facts *facts, pf_error *error) PF_MUST_USE;
+/* Begins a transaction as the only writer. After any failure from here on: pf_store_import_rollback;
+** at the end: pf_store_import_commit. */
+pf_status pf_write_begin(pf_store *store, pf_error *error) PF_MUST_USE;
+
+/* Adds the entry that the states to come belong to. */
+pf_status pf_write_entry(pf_store *store, const pf_log_facts *facts, pf_error *error) PF_MUST_USE;
+
+/* Both, with pf_store_import_begin's answer to a repeat; after a failure nothing is open. */
+pf_status pf_import_begin_as(pf_store *store, const char *kind, const pf_import_facts *facts,
+                             int64_t *already, pf_error *error) PF_MUST_USE;
+
+/* Whether an entry holds: it was not undone, or its undo was itself undone, and so on. */
+pf_status pf_entry_holds(pf_store *store, int64_t entry, bool *holding,
+                         pf_error *error) PF_MUST_USE;
 
 /* Stores a state as the next revision of the target, or within the revision that this entry already
 ** made. curves: the row of its curves where they are stored already (0: it has none), or

@@ -140,7 +140,7 @@ static void test_physics_is_checked_before_storing(void **state)
     import_open(on, "ana", MONDAY, NULL);
     change_make(&change, "A", NULL, 1);
     change.part.vgs_max_V = -20;
-    refuse(on, &change, PF_BAD_INPUT, "vgs_max -20 must lie between 1 and 100 V");
+    refuse(on, &change, PF_BAD_INPUT, "vgs_max -20 V must lie between 1 V and 100 V");
     change_make(&change, "A", NULL, 1);
     change.part.soa[0].id_A = 0;
     refuse(on, &change, PF_BAD_INPUT, "currents of the SOA must be positive");
