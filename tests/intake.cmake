@@ -16,3 +16,4 @@ if(Python3_FOUND)
   add_test(NAME csv_compare
     COMMAND ${Python3_EXECUTABLE} ${CMAKE_CURRENT_SOURCE_DIR}/unit/csv_compare.py $<TARGET_FILE:table_dump>)
 endif()
+pf_test(test_intake_profile SOURCES unit/test_intake_profile.c LIBRARIES ${INTAKE})
