@@ -195,7 +195,7 @@ static void print_remark_letters(FILE *out, unsigned remarks)
     fputc('\n', out);
 }
 
-static void print_row(FILE *out, const pf_ranking *ranking, size_t place)
+static void print_row(FILE *out, const pf_ranking *ranking, size_t place, unsigned common)
 {
     const pf_row *row = &ranking->row[place];
     const pf_assessment *deciding = &row->assessment[row->deciding_profile];
@@ -213,30 +213,35 @@ static void print_row(FILE *out, const pf_ranking *ranking, size_t place)
     fputc('\n', out);
     print_reason(out, plan, deciding);
     if (ranking->profile_count > 1) print_cards(out, ranking, row);
-    print_remark_letters(out, remarks_of(ranking, row));
+    print_remark_letters(out, remarks_of(ranking, row) & ~common);
 }
 
-static void print_remarks(FILE *out, unsigned remarks)
+/* What the letters mean; remarks that every row shares are told once. */
+static void print_remarks(FILE *out, unsigned remarks, unsigned common)
 {
     for (unsigned bit = 0; remarks >> bit; bit++)
-        if (remarks >> bit & 1) fprintf(out, "  %c  %s\n", 'a' + bit, pf_remark_text(1u << bit));
+        if (remarks >> bit & 1)
+            fprintf(out, "  %c  %s%s\n", common >> bit & 1 ? '*' : 'a' + (int)bit,
+                    common >> bit & 1 ? "all: " : "", pf_remark_text(1u << bit));
     if (remarks) fputc('\n', out);
 }
 
 void pf_report_table(FILE *out, const pf_ranking *ranking, const pf_report_source *source)
 {
     size_t shown = source->top && source->top < ranking->count ? source->top : ranking->count;
-    unsigned remarks = 0;
+    unsigned any = 0, common = shown > 1 ? ~0u : 0;
     for (size_t i = 0; i < ranking->profile_count; i++)
         print_card(out, ranking->plan[i]);
     print_counts(out, ranking, source);
     if (shown) print_heading(out);
     for (size_t i = 0; i < shown; i++) {
-        print_row(out, ranking, i);
-        remarks |= remarks_of(ranking, &ranking->row[i]);
+        any |= remarks_of(ranking, &ranking->row[i]);
+        common &= remarks_of(ranking, &ranking->row[i]);
     }
+    for (size_t i = 0; i < shown; i++)
+        print_row(out, ranking, i, common);
     if (shown) fputc('\n', out);
-    print_remarks(out, remarks);
+    print_remarks(out, any, common);
     for (const char *const *line = pf_report_cautions(); *line; line++)
         fprintf(out, "%s\n", *line);
 }

@@ -3,6 +3,8 @@
 #include "base/number.h"
 #include "store/packed.h"
 
+#include <string.h>
+
 pf_status pf_judge_needs(const pf_part *part, bool curves_only, pf_error *error)
 {
     const char *lacks = part->polarity == PF_POLARITY_NONE ? "polarity"
@@ -43,6 +45,17 @@ static pf_status judge_soa(const pf_part *part, pf_error *error)
     return PF_OK;
 }
 
+/* The words of the life cycle; a part may also state none. */
+static pf_status judge_status(const pf_part *part, pf_error *error)
+{
+    static const char *const known[] = {"active", "not-for-new", "obsolete", "banned"};
+    for (size_t i = 0; i < sizeof known / sizeof *known; i++)
+        if (!part->status || strcmp(part->status, known[i]) == 0) return PF_OK;
+    return pf_error_set(error, PF_BAD_INPUT,
+                        "part %s: the status `%s` is none: active, not-for-new, obsolete or banned",
+                        part->name, part->status);
+}
+
 pf_status pf_judge_values(const pf_part *part, pf_error *error)
 {
     size_t count;
@@ -53,6 +66,7 @@ pf_status pf_judge_values(const pf_part *part, pf_error *error)
     if (status == PF_OK && part->vth_min_V > part->vth_max_V)
         status = pf_error_set(error, PF_BAD_INPUT, "part %s: vth_min must not be above vth_max",
                               part->name);
+    if (status == PF_OK) status = judge_status(part, error);
     if (status == PF_OK) status = judge_soa(part, error);
     const char *wrong = status == PF_OK ? pf_curves_judge(part) : NULL;
     return wrong ? pf_error_set(error, PF_BAD_INPUT, "part %s: %s", part->name, wrong) : status;
