@@ -50,6 +50,9 @@ const char *pf_store_warning(const pf_store *store);
 /* Waits this long for locks instead of PF_STORE_WAIT_S. */
 void pf_store_wait(pf_store *store, int milliseconds);
 
+/* Lets the file grow to so many pages of 8 KiB and no further, as a full disk would. */
+void pf_store_limit_pages(pf_store *store, int pages);
+
 /* ---- reading ---- */
 
 /* Several reads that belong together see one state of the database between these two. Writers have

@@ -129,3 +129,10 @@ void pf_store_wait(pf_store *store, int milliseconds)
     store->wait_ms = milliseconds;
     sqlite3_busy_timeout(store->db, milliseconds);
 }
+
+void pf_store_limit_pages(pf_store *store, int pages)
+{
+    char sql[64];
+    sqlite3_snprintf(sizeof sql, sql, "PRAGMA max_page_count=%d", pages);
+    sqlite3_exec(store->db, sql, NULL, NULL, NULL);
+}
