@@ -60,7 +60,7 @@ CREATE TABLE part (
   {columns},
   CONSTRAINT "a part needs vds_max" CHECK (vds_max_V IS NOT NULL),
   CONSTRAINT "a part needs tj_max" CHECK (tj_max_degC IS NOT NULL),
-  CONSTRAINT "a banned part needs a reason" CHECK (status IS NOT 'banned' OR trim(status_reason) <> ''),
+  CONSTRAINT "a banned part needs a reason" CHECK (status IS NOT 'banned' OR trim(ifnull(status_reason, '')) <> ''),
   CONSTRAINT "vth_min must not be above vth_max" CHECK (vth_min_V <= vth_max_V),
   CONSTRAINT "the SOA must not go more than a tenth beyond vds_max" CHECK (soa_top_V <= 1.1 * vds_max_V)
 ) STRICT;

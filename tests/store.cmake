@@ -1,5 +1,10 @@
 # Tests of the ratings database.
-pf_test(test_store_import SOURCES unit/test_store_import.c unit/store_support.c LIBRARIES pf_store)
-pf_test(test_store_history SOURCES unit/test_store_history.c unit/store_support.c LIBRARIES pf_store)
-pf_test(test_store_health SOURCES unit/test_store_health.c unit/store_support.c LIBRARIES pf_store
-  PkgConfig::SQLITE)
+set(STORE_SUPPORT unit/store_support.c)
+pf_test(test_store_import SOURCES unit/test_store_import.c ${STORE_SUPPORT} LIBRARIES pf_store)
+pf_test(test_store_history SOURCES unit/test_store_history.c ${STORE_SUPPORT} LIBRARIES pf_store)
+pf_test(test_store_merge SOURCES unit/test_store_merge.c ${STORE_SUPPORT} LIBRARIES pf_store)
+pf_test(test_store_health SOURCES unit/test_store_health.c ${STORE_SUPPORT}
+  LIBRARIES pf_store PkgConfig::SQLITE)
+pf_test(test_store_docs SOURCES unit/test_store_docs.c ${STORE_SUPPORT}
+  LIBRARIES pf_store PkgConfig::SQLITE)
+target_compile_definitions(test_store_docs PRIVATE PF_SOURCE_FOLDER="${PROJECT_SOURCE_DIR}")
