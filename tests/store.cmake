@@ -8,3 +8,9 @@ pf_test(test_store_health SOURCES unit/test_store_health.c ${STORE_SUPPORT}
 pf_test(test_store_docs SOURCES unit/test_store_docs.c ${STORE_SUPPORT}
   LIBRARIES pf_store PkgConfig::SQLITE)
 target_compile_definitions(test_store_docs PRIVATE PF_SOURCE_FOLDER="${PROJECT_SOURCE_DIR}")
+
+# The same under adverse conditions; PF_FAULT_FULL in the environment: the full counts.
+set(STORE_LOAD fault/store_load.c ${STORE_SUPPORT})
+pf_test(test_store_many SOURCES fault/test_store_many.c ${STORE_LOAD} LIBRARIES pf_store)
+pf_test(test_store_kill SOURCES fault/test_store_kill.c ${STORE_LOAD} LIBRARIES pf_store)
+pf_test(test_store_flips SOURCES fault/test_store_flips.c ${STORE_LOAD} LIBRARIES pf_store)
