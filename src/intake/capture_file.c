@@ -84,7 +84,7 @@ static pf_status check_end(pf_sheet *sheet, const capture_reading *reading)
 {
     pf_fault fault;
     pf_place place = {sheet->file, 0, NULL, NULL};
-    if (reading->data->count < 2 && sheet->problems->refusals == 0) {
+    if (reading->data->count < 2) {
         pf_fault_set(&fault, "a waveform of at least two samples", "fewer than two samples");
         pf_status status =
             pf_sheet_refuse_at(sheet, sheet->last_line, NULL, (pf_slice){"", 0}, &fault);

@@ -141,7 +141,7 @@ static pf_status on_row(void *context, const pf_row *row)
     pf_fault fault;
     sheet->row = row;
     sheet->last_line = row->line;
-    if (sheet->problems->refusals > PF_PROBLEMS_MAX) return PF_LIMIT;
+    if (sheet->problems->refusals - sheet->refusals_before > PF_PROBLEMS_MAX) return PF_LIMIT;
     if (row->header) return take_header(sheet);
     if (!complete(sheet) || is_blank_row(row)) return PF_OK;
     if (!row->wrong) return sheet->take(sheet, sheet->context);
@@ -165,7 +165,7 @@ static pf_status report_end(pf_sheet *sheet, pf_status status)
 
 pf_status pf_sheet_read(pf_sheet *sheet, const pf_source *source)
 {
-    size_t before = sheet->problems->refusals;
+    size_t before = sheet->refusals_before = sheet->problems->refusals;
     for (size_t i = 0; i < sheet->column_count; i++)
         sheet->place[i] = -1;
     sheet->file = source->name;

@@ -24,6 +24,7 @@ typedef struct pf_sheet {
     int place[PF_SHEET_COLUMNS_MAX]; /* of the column in the file, -1: not there */
     const pf_row *row;               /* at hand */
     size_t last_line;
+    size_t refusals_before; /* problems->refusals when the file began */
     pf_status (*take)(struct pf_sheet *sheet, void *context); /* per data row */
     void *context;
     pf_table *table;

@@ -78,25 +78,42 @@ bool pf_not_stated(pf_slice slice)
     return false;
 }
 
+/* The next character of a name that counts, in small letters; 0 at the end. */
+static char next_folded(pf_slice *rest)
+{
+    while (rest->length > 0) {
+        char c = rest->text[0];
+        size_t blank = is_plain(c) ? 0 : pf_blank_length(rest->text, rest->length);
+        size_t taken = blank ? blank : 1;
+        *rest = (pf_slice){rest->text + taken, rest->length - taken};
+        if (blank == 0 && !strchr("_-().,", c)) return lower(c);
+    }
+    return '\0';
+}
+
 size_t pf_fold(pf_slice name, char folded[PF_FOLDED_ROOM])
 {
     size_t length = 0;
-    for (size_t i = 0; i < name.length && length < PF_FOLDED_ROOM - 1;) {
-        size_t blank = pf_blank_length(name.text + i, name.length - i);
-        if (blank == 0 && !strchr("_-().,", name.text[i])) folded[length++] = lower(name.text[i]);
-        i += blank ? blank : 1;
-    }
+    char c;
+    while (length < PF_FOLDED_ROOM - 1 && (c = next_folded(&name)) != '\0')
+        folded[length++] = c;
     folded[length] = '\0';
     return length;
 }
 
+static bool folds_to(pf_slice name, const char *folded)
+{
+    char c;
+    while ((c = next_folded(&name)) != '\0')
+        if (c != *folded++) return false;
+    return *folded == '\0';
+}
+
 bool pf_folded_in(const char *folded, const char *names)
 {
-    char one[PF_FOLDED_ROOM];
     for (;;) {
         size_t length = strcspn(names, "|");
-        pf_fold(pf_slice_from(names, length), one);
-        if (*one && strcmp(one, folded) == 0) return true;
+        if (*folded && folds_to((pf_slice){names, length}, folded)) return true;
         if (names[length] == '\0') return false;
         names += length + 1;
     }

@@ -203,6 +203,21 @@ static void test_captures_that_are_none_are_refused_at_their_lines(void **state)
     }
 }
 
+static void test_an_earlier_files_refusals_do_not_excuse_a_capture(void **state)
+{
+    pf_capture_data capture = {0};
+    pf_problems problems;
+    (void)state;
+    pf_problems_init(&problems);
+    pf_status status = pf_problems_add(&problems, PF_SEVERITY_REFUSAL, (pf_place){.file = "a.csv"},
+                                       NULL, "something else");
+    assert_int_equal(status, PF_BAD_INPUT);
+    static const char one[] = "time [s],vds,id\n0,4,5\n";
+    assert_int_equal(pf_capture_read("b.csv", one, strlen(one), &capture, &problems), PF_BAD_INPUT);
+    assert_int_equal(problems.refusals, 2);
+    pf_problems_clear(&problems);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -212,6 +227,7 @@ int main(void)
         cmocka_unit_test(test_rules_that_mean_nothing_are_refused_with_their_lines),
         cmocka_unit_test(test_a_capture_keeps_its_samples_and_negative_offsets),
         cmocka_unit_test(test_captures_that_are_none_are_refused_at_their_lines),
+        cmocka_unit_test(test_an_earlier_files_refusals_do_not_excuse_a_capture),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
