@@ -19,3 +19,7 @@ endif()
 pf_test(test_intake_profile SOURCES unit/test_intake_profile.c LIBRARIES ${INTAKE})
 pf_test(test_intake_run SOURCES unit/test_intake_run.c LIBRARIES ${INTAKE})
 pf_test(test_device_plausibility SOURCES unit/test_device_plausibility.c LIBRARIES pf_device)
+
+# What everything stands on.
+pf_test(test_base_number SOURCES unit/test_base_number.c LIBRARIES pf_base m)
+pf_test(test_base_units SOURCES unit/test_base_units.c LIBRARIES pf_base m)
