@@ -128,7 +128,7 @@ def ratings(die):
     year, month = die["random"].randint(2017, 2025), die["random"].randint(1, 12)
     row = {
         "part": die["name"], "maker": die["maker"], "polarity": die["polarity"],
-        "package": die["package"], "status": die["random"].choice(["active", "active", "active", "new"]),
+        "package": die["package"], "status": die["random"].choice(["active", "active", "active", "not-for-new"]),
         "vds_max [V]": f"{sign}{die['vds']}", "vgs_max [V]": f"{sign}20",
         "id_cont [A]": sign + digits(die["id_cont"]), "id_pulse [A]": sign + digits(die["id_pulse"]),
         "rdson_max @ 10 V [mOhm]": digits(die["ron"] * 1e3),
