@@ -1,7 +1,6 @@
 /* kernel.c: the weights of superposition integrals on a grid of levels and lags. */
 #include "numeric/kernel.h"
 #include "base/memory.h"
-#include "numeric/dot.h"
 #include "numeric/passed.h"
 
 #include <math.h>
@@ -28,6 +27,17 @@ static double duration_of(const pf_trace *trace)
     return trace->time[trace->count - 1];
 }
 
+/* The corner of a trace with a number, in even steps. A jump since the corner before takes its place,
+** but for the last, which is the end. */
+static double corner_of(const pf_trace *trace, size_t number, size_t corners)
+{
+    size_t from = (trace->count - 1) * number / corners;
+    size_t to = (trace->count - 1) * (number + 1) / corners;
+    for (size_t i = from; i < to && number + 1 < corners; i++)
+        if (trace->time[i] == trace->time[i + 1]) return trace->time[i];
+    return trace->time[to];
+}
+
 /* The moment of a trace with a number: the lags counted from the start, up to the end of the trace;
 ** corners of the trace in even steps, the last of them the end; the extra ones. NaN for none. */
 static double moment_of(const pf_kernel *kernel, pf_kernel_size size, const pf_trace *trace,
@@ -39,7 +49,7 @@ static double moment_of(const pf_kernel *kernel, pf_kernel_size size, const pf_t
         return at < end ? at : NAN;
     }
     number -= kernel->lags;
-    if (number < size.corners) return trace->time[(trace->count - 1) * (number + 1) / size.corners];
+    if (number < size.corners) return corner_of(trace, number, size.corners);
     at = size.extra[number - size.corners];
     return at < end ? at : NAN;
 }
@@ -156,8 +166,6 @@ static pf_status fill(pf_kernel *kernel, pf_kernel_size size, const pf_trace *tr
     pf_status status = PF_OK;
     for (size_t t = 0; t < count && status == PF_OK; t++)
         status = fill_trace(kernel, size, &trace[t]);
-    kernel->rows.kept = kernel->rows.count;
-    kernel->total.kept = kernel->total.count;
     mark_used(kernel);
     return status;
 }
@@ -180,6 +188,14 @@ pf_status pf_kernel_init(pf_kernel *kernel, const pf_trace *trace, size_t count,
     return status;
 }
 
+static void rows_clear(pf_kernel_rows *rows)
+{
+    pf_free(rows->row);
+    pf_free(rows->weights);
+    pf_free(rows->node);
+    pf_free(rows->node_weights);
+}
+
 void pf_kernel_clear(pf_kernel *kernel)
 {
     pf_free(kernel->lag);
@@ -187,24 +203,7 @@ void pf_kernel_clear(pf_kernel *kernel)
     pf_free(kernel->level);
     pf_free(kernel->log_level);
     pf_free(kernel->used);
-    pf_free(kernel->rows.row);
-    pf_free(kernel->rows.weights);
-    pf_free(kernel->total.row);
-    pf_free(kernel->total.weights);
+    rows_clear(&kernel->rows);
+    rows_clear(&kernel->total);
     *kernel = (pf_kernel){0};
-}
-
-const pf_kernel_row *pf_kernel_peak(const pf_kernel *kernel, const pf_kernel_rows *rows,
-                                    size_t count, const double *sample, double *highest)
-{
-    const pf_kernel_row *found = NULL;
-    size_t levels = rows == &kernel->rows ? kernel->levels : 1;
-    for (size_t r = 0; r < count; r++) {
-        double answer =
-            pf_dot_rows(rows->row[r].weight, sample, levels, kernel->lags, rows->row[r].reach);
-        if (found && !(answer > *highest)) continue;
-        *highest = answer;
-        found = &rows->row[r];
-    }
-    return found;
 }

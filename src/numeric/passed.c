@@ -28,22 +28,32 @@ static void deposit(const pf_passed *passed, double *column, double level, doubl
     column[passed->levels] += flow * level;
 }
 
-/* What passes between two corners, by Simpson's rule on pieces no longer than a step of the levels:
-** exact for the product of two straight lines away from the nodes. */
-static void pass_segment(const pf_passed *passed, size_t from, double *column)
+/* The share of the way between two corners at which the level next meets a node, behind share x; at
+** most last. */
+static double next_node(const pf_passed *passed, double level, double rise, double x, double last)
+{
+    double step = passed->top / (double)(passed->levels - 1);
+    double place = (level + rise * x) / step;
+    if (rise == 0) return last;
+    double node = rise > 0 ? floor(place + 1e-9) + 1 : ceil(place - 1e-9) - 1;
+    return fmin(last, (node * step - level) / rise);
+}
+
+/* What passes from a corner to a share of the way to the next, from node to node of the levels:
+** there all that is summed is at most quadratic, for which Simpson's rule is exact. */
+static void pass_segment(const pf_passed *passed, size_t from, double last, double *column)
 {
     const pf_trace *trace = passed->trace;
     double v0 = trace->level[from], dv = trace->level[from + 1] - v0;
     double f0 = trace->flow[from], df = trace->flow[from + 1] - f0;
-    double duration = trace->time[from + 1] - trace->time[from];
+    double duration = trace->time[from + 1] - trace->time[from], next;
     if (!(duration > 0)) return;
-    size_t pieces = 1 + (size_t)(fabs(dv) / passed->top * (double)(passed->levels - 1));
-    double width = 1 / (double)pieces;
-    for (size_t i = 0; i < pieces; i++) {
+    for (double x = 0; x < last; x = next) {
+        next = next_node(passed, v0, dv, x, last);
         for (int point = 0; point < 3; point++) {
-            double x = ((double)i + 0.5 * point) * width;
-            double share = duration * width * (point == 1 ? 4 : 1) / 6;
-            deposit(passed, column, v0 + dv * x, share * (f0 + df * x));
+            double at = x + 0.5 * point * (next - x);
+            double share = duration * (next - x) * (point == 1 ? 4 : 1) / 6;
+            deposit(passed, column, v0 + dv * at, share * (f0 + df * at));
         }
     }
 }
@@ -56,7 +66,7 @@ pf_status pf_passed_init(pf_passed *passed, const pf_trace *trace, double top, s
     for (size_t i = 0; i + 1 < trace->count; i++) {
         double *next = passed->amount + (i + 1) * passed->columns;
         memcpy(next, next - passed->columns, passed->columns * sizeof *next);
-        pass_segment(passed, i, next);
+        pass_segment(passed, i, 1, next);
     }
     return PF_OK;
 }
@@ -92,9 +102,16 @@ void pf_passed_at(const pf_passed *passed, double time, double *column)
     size_t corner = find_corner(passed->trace, time);
     double share = share_of(passed->trace, corner, time);
     const double *left = passed->amount + corner * passed->columns;
-    const double *right = left + passed->columns;
-    for (size_t i = 0; i < passed->columns; i++)
-        column[i] = left[i] + share * (right[i] - left[i]);
+    memcpy(column, left, passed->columns * sizeof *column);
+    pass_segment(passed, corner, share, column);
+}
+
+/* Whether the later of two corners at one time is the stronger. */
+static bool rises(const pf_trace *trace, size_t corner)
+{
+    const double *level = trace->level + corner, *flow = trace->flow + corner;
+    return trace->time[corner] == trace->time[corner + 1] &&
+           level[1] * flow[1] > level[0] * flow[0];
 }
 
 void pf_passed_instant(const pf_passed *passed, double time, double *column)
@@ -104,6 +121,7 @@ void pf_passed_instant(const pf_passed *passed, double time, double *column)
     while (left > 0 && trace->time[left] >= time)
         left--;
     double share = share_of(trace, left, time);
+    if (share == 1 && left + 2 < trace->count && rises(trace, left + 1)) left++;
     double level = trace->level[left] + share * (trace->level[left + 1] - trace->level[left]);
     double flow = trace->flow[left] + share * (trace->flow[left + 1] - trace->flow[left]);
     memset(column, 0, passed->columns * sizeof *column);

@@ -26,8 +26,8 @@ void pf_passed_clear(pf_passed *passed);
 /* All columns at a time, clipped to the trace. */
 void pf_passed_at(const pf_passed *passed, double time, double *column);
 
-/* The flow at a time itself, spread over the columns. At a jump it is the flow before the jump, at
-** the start the flow behind it: the jump up begins a stress and the jump down ends one. */
+/* The flow at a time itself, spread over the columns. At a jump it is that of the stronger side: the
+** jump up begins a stress and the jump down ends one. At the start it is the flow behind it. */
 void pf_passed_instant(const pf_passed *passed, double time, double *column);
 
 #endif

@@ -22,9 +22,15 @@ static const pf_kernel_size start_size = {.levels = 17, .corners = 64};
 ** more than half of the lags. */
 #define GROUP_SPAN 3
 
-/* A recording may hold anything: finer, and looked at more often. */
-#define CAPTURE_MOMENTS 64 /* equal steps of time, and as many of energy */
-static const pf_kernel_size capture_size = {.levels = 33, .corners = 64};
+/* A recording may hold anything, a spike of microseconds in a second among it: its lags grow as
+** fourth powers of CAPTURE_STEPS even steps. It is looked at at all its samples when it has no more
+** than ANCHORS, else at the strongest of equal steps of time and where its energy passes equal
+** shares, as many of each; and at moments between two of them, since power peaks between samples
+** and a junction goes on heating behind a peak. MOMENTS at most. */
+#define CAPTURE_STEPS 100
+#define ANCHORS 128
+#define MOMENTS 512
+static const pf_kernel_size capture_size = {.levels = 33, .corners = 1};
 
 /* Moves the lag nearest to a pulse width there, or adds one. */
 static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
@@ -47,20 +53,19 @@ static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
     return lags;
 }
 
-/* The lags of a kernel of waveforms that last up to duration_s; returns how many. A kink of the SOA
-*in
-** time lies at a pulse width; on a lag it costs nothing. */
-static size_t place_lags(double lag[PF_LAGS_MAX], double duration_s)
+/* The lags of a kernel of waveforms that last up to duration_s, growing with a power of even steps;
+** returns how many. A kink of the SOA in time lies at a pulse width; on a lag it costs nothing. */
+static size_t place_lags(double lag[PF_LAGS_MAX], double duration_s, size_t steps, int power)
 {
     static const double mantissa[] = {1, 2, 5};
     size_t lags = 0;
-    for (; lags <= STEPS; lags++)
-        lag[lags] = duration_s * (double)(lags * lags) / (double)(STEPS * STEPS);
+    for (; lags <= steps; lags++)
+        lag[lags] = duration_s * pow((double)lags / (double)steps, power);
     for (int decade = -6; decade <= 2; decade++)
         for (int i = 0; i < 3; i++) {
             double pulse_s =
                 decade < 0 ? mantissa[i] / pow(10, -decade) : mantissa[i] * pow(10, decade);
-            if (pulse_s > duration_s / 300) lags = place_pulse(lag, lags, pulse_s);
+            if (pulse_s > lag[2]) lags = place_pulse(lag, lags, pulse_s);
         }
     return lags;
 }
@@ -123,21 +128,24 @@ static pf_wave scalars_of(const pf_waveform *form)
     };
 }
 
-static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count,
-                            pf_kernel_size size, bool prune)
+static double longest_of(const pf_trace *trace, size_t count)
 {
-    double lag[PF_LAGS_MAX], longest_s = 0;
+    double longest_s = 0;
     for (size_t i = 0; i < count; i++)
         longest_s = fmax(longest_s, trace[i].time[trace[i].count - 1]);
-    size.lag = lag;
-    size.lags = place_lags(lag, longest_s);
+    return longest_s;
+}
+
+static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count,
+                            pf_kernel_size size, bool many)
+{
     pf_kernel *kernel = &waves->kernel[waves->kernels];
     pf_status status = pf_kernel_init(kernel, trace, count, size);
     if (status != PF_OK) return status;
     waves->kernels++;
     if (kernel->levels * kernel->lags > waves->samples)
         waves->samples = kernel->levels * kernel->lags;
-    return prune ? pf_kernel_prune(kernel) : PF_OK;
+    return many ? pf_kernel_bound(kernel) : PF_OK;
 }
 
 static int longest_first(const void *left, const void *right)
@@ -149,16 +157,20 @@ static int longest_first(const void *left, const void *right)
 }
 
 /* Makes kernels of waveforms whose durations lie within GROUP_SPAN of each other. */
-static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool prune)
+static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool many)
 {
+    double lag[PF_LAGS_MAX];
+    pf_kernel_size size = start_size;
     size_t first = 0, used = 0;
+    size.lag = lag;
     pf_status status = PF_OK;
     qsort(form, waves->count, sizeof *form, longest_first);
     for (size_t i = 0; i <= waves->count && status == PF_OK; i++) {
         bool ends = i == waves->count || form[i].form.unbounded ||
                     form[i].form.duration_s * GROUP_SPAN < form[first].form.duration_s;
         if (ends && used > first) {
-            status = add_kernel(waves, trace + first, used - first, start_size, prune);
+            size.lags = place_lags(lag, longest_of(trace + first, used - first), STEPS, 2);
+            status = add_kernel(waves, trace + first, used - first, size, many);
             first = used;
         }
         if (i == waves->count || form[i].form.unbounded) continue;
@@ -192,14 +204,14 @@ static pf_status allocate(pf_waves *waves, size_t count)
 }
 
 pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s,
-                               bool prune)
+                               bool many)
 {
     pf_status status = allocate(waves, count);
     corner_form *form = pf_allocate(count, sizeof *form);
     pf_trace *trace = pf_allocate(count, sizeof *trace);
     if (!form || !trace) status = PF_NO_MEMORY;
     if (status == PF_OK) status = integrate(waves, start, hold_s, form);
-    if (status == PF_OK) status = group(waves, form, trace, prune);
+    if (status == PF_OK) status = group(waves, form, trace, many);
     for (size_t i = 0; form && i < count; i++)
         pf_waveform_clear(&form[i].form);
     pf_free(form);
@@ -236,46 +248,100 @@ static double segment_energy(const pf_trace *trace, size_t i)
     return mean * (trace->time[i + 1] - trace->time[i]);
 }
 
-/* Scalars of the trace, and the moments at which its energy passes equal shares. */
-static pf_wave survey(const pf_trace *trace, double *moment)
+static pf_wave survey(const pf_trace *trace)
 {
     pf_wave wave = {.duration_s = trace->time[trace->count - 1]};
-    double passed = 0;
-    size_t quantile = 0;
     for (size_t i = 0; i < trace->count; i++) {
         wave.peak_power_W = fmax(wave.peak_power_W, trace->level[i] * trace->flow[i]);
         wave.peak_current_A = fmax(wave.peak_current_A, trace->flow[i]);
         if (i + 1 < trace->count) wave.energy_J += segment_energy(trace, i);
     }
+    return wave;
+}
+
+/* The strongest sample of each of ANCHORS/2 equal steps of time; returns how many steps have one. */
+static size_t find_strongest(const pf_trace *trace, double *anchor)
+{
+    size_t found = 0, at = 0;
+    double end = trace->time[trace->count - 1];
+    for (int step = 1; step <= ANCHORS / 2; step++) {
+        double highest = -1;
+        for (; at < trace->count && trace->time[at] <= end * step / (ANCHORS / 2); at++) {
+            double power = trace->level[at] * trace->flow[at];
+            if (!(power > highest)) continue;
+            highest = power;
+            anchor[found] = trace->time[at];
+        }
+        if (highest >= 0) found++;
+    }
+    return found;
+}
+
+/* Where the energy passes ANCHORS/2 equal shares. */
+static size_t find_shares(const pf_trace *trace, double energy_J, double *anchor)
+{
+    double passed = 0;
+    size_t found = 0;
     for (size_t i = 0; i + 1 < trace->count; i++) {
         passed += segment_energy(trace, i);
-        while (quantile < CAPTURE_MOMENTS &&
-               passed * CAPTURE_MOMENTS >= wave.energy_J * (double)(quantile + 1))
-            moment[quantile++] = trace->time[i + 1];
+        while (found < ANCHORS / 2 && passed * (ANCHORS / 2) >= energy_J * (double)(found + 1))
+            anchor[found++] = trace->time[i + 1];
     }
-    while (quantile < CAPTURE_MOMENTS)
-        moment[quantile++] = wave.duration_s;
-    for (size_t i = 0; i < CAPTURE_MOMENTS; i++)
-        moment[CAPTURE_MOMENTS + i] = wave.duration_s * (double)(i + 1) / CAPTURE_MOMENTS;
-    return wave;
+    return found;
+}
+
+static int by_size(const void *left, const void *right)
+{
+    double a = *(const double *)left, b = *(const double *)right;
+    return (a > b) - (a < b);
+}
+
+static size_t place_anchors(const pf_trace *trace, double energy_J, double anchor[ANCHORS])
+{
+    if (trace->count <= ANCHORS) {
+        for (size_t i = 0; i < trace->count; i++)
+            anchor[i] = trace->time[i];
+        return trace->count;
+    }
+    size_t found = find_strongest(trace, anchor);
+    found += find_shares(trace, energy_J, anchor + found);
+    qsort(anchor, found, sizeof *anchor, by_size);
+    return found;
+}
+
+/* The moments at which a recording is looked at; returns how many. */
+static size_t place_looks(const pf_trace *trace, double energy_J, double moment[MOMENTS])
+{
+    double anchor[ANCHORS], before = 0;
+    size_t anchors = place_anchors(trace, energy_J, anchor), looks = 0, between = MOMENTS / anchors;
+    for (size_t i = 0; i < anchors; before = anchor[i++])
+        for (size_t k = 1; k <= between && anchor[i] > before; k++)
+            moment[looks++] = before + (anchor[i] - before) * (double)k / (double)between;
+    return looks;
+}
+
+static pf_status add_capture(pf_waves *waves, const pf_trace *trace)
+{
+    double lag[PF_LAGS_MAX], moment[MOMENTS];
+    pf_kernel_size size = capture_size;
+    waves->wave[0] = survey(trace);
+    waves->peak_current_A = waves->wave[0].peak_current_A;
+    size.lag = lag;
+    size.lags = place_lags(lag, longest_of(trace, 1), CAPTURE_STEPS, 4);
+    size.extra = moment;
+    size.extra_count = place_looks(trace, waves->wave[0].energy_J, moment);
+    return add_kernel(waves, trace, 1, size, true);
 }
 
 pf_status pf_waves_from_capture(pf_waves *waves, const pf_capture *capture)
 {
-    double *time, *vds, *id, moment[2 * CAPTURE_MOMENTS];
-    pf_kernel_size size = capture_size;
+    double *time, *vds, *id;
     *waves = (pf_waves){0};
     pf_status status = copy_samples(capture, &time, &vds, &id);
     if (status != PF_OK) return status;
     const pf_trace trace = {0, capture->count, time, vds, id};
-    size.extra = moment;
-    size.extra_count = sizeof moment / sizeof *moment;
     status = allocate(waves, 1);
-    if (status == PF_OK) {
-        waves->wave[0] = survey(&trace, moment);
-        waves->peak_current_A = waves->wave[0].peak_current_A;
-        status = add_kernel(waves, &trace, 1, size, true);
-    }
+    if (status == PF_OK) status = add_capture(waves, &trace);
     pf_free(time);
     if (status != PF_OK) pf_waves_clear(waves);
     return status;
