@@ -6,8 +6,9 @@
 #include <math.h>
 
 #define CURVES_MAX 16
-#define MOMENTS 160
+#define MOMENTS 90
 #define BREAKS_MAX 80
+#define FEW 50
 
 /* One curve's current at a voltage, straight from the points (sorted by pulse, then voltage). */
 static double curve_A(const pf_soa_point *point, size_t count, double vds_V)
@@ -128,7 +129,7 @@ static size_t find_breaks(const pf_part *part, const form *wave, double moment_s
     if (count == 0) return 0;
     for (size_t i = 0; i + 1 < wave->count && count < BREAKS_MAX - 1; i++) {
         double lag = moment_s - wave->time_s[i];
-        bool kink = wave->count < 50 || wave->time_s[i + 1] == wave->time_s[i];
+        bool kink = wave->count < FEW || wave->time_s[i + 1] == wave->time_s[i];
         if (kink && lag > pulse_s[0] && lag < moment_s) end_s[count++] = lag;
     }
     end_s[count++] = moment_s;
@@ -167,9 +168,28 @@ double exact_hot_rise_K(const pf_part *part, const form *wave, double moment_s)
     return sum * (part->tj_max_degC - 25);
 }
 
+/* Moments close behind every corner of a recording of few. */
+static double peak_at_corners(const pf_part *part, const form *wave, double *when_s,
+                              double *width_s)
+{
+    double highest = 0;
+    for (size_t i = 0; i + 1 < wave->count && wave->count < FEW; i++) {
+        double length = wave->time_s[i + 1] - wave->time_s[i];
+        for (int k = 1; k <= 8; k++) {
+            double at = wave->time_s[i] + length * k / 8, rise = exact_hot_rise_K(part, wave, at);
+            if (!(rise > highest)) continue;
+            highest = rise;
+            *when_s = at;
+            *width_s = length / 8;
+        }
+    }
+    return highest;
+}
+
 double exact_hot_peak_K(const pf_part *part, const form *wave, double *when_s)
 {
-    double highest = 0, end = wave->time_s[wave->count - 1], width = end;
+    double end = wave->time_s[wave->count - 1], width = end;
+    double highest = peak_at_corners(part, wave, when_s, &width);
     for (int i = 1; i <= MOMENTS; i++) {
         double share = (double)i / MOMENTS;
         double at[] = {end * share, end * share * share * share};

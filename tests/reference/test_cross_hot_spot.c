@@ -13,7 +13,7 @@
 #include <passfet/stress.h>
 #include <stdlib.h>
 
-#define CASES 60 /* parts per start control */
+#define CASES 40 /* parts per start control */
 #define OPTIMISTIC 0.003
 #define PESSIMISTIC 0.01
 
@@ -118,29 +118,79 @@ static size_t random_form(random_source *source, double supply_V, double *t, dou
     return count;
 }
 
+/* One recording on one random part that can carry its voltage. */
+static void try_recording(random_source *source, double supply_V, const pf_capture *capture,
+                          extremes *seen)
+{
+    double when;
+    pf_part part;
+    pf_profile profile;
+    pf_part_init(&part);
+    pf_profile_init(&profile);
+    random_profile(source, PF_START_CURRENT_LIMIT, 0, &profile);
+    profile_state(&profile, "ambient_temperature=25 running_current=0");
+    random_part(source, supply_V, &part);
+    assert_int_equal(pf_profile_finish(&profile, NULL, NULL), PF_OK);
+    const form shape = {capture->time_s, capture->vds_V, capture->id_A, capture->count};
+    note(seen, rise_of(&profile, capture, &part, PF_RECORDED),
+         exact_hot_peak_K(&part, &shape, &when));
+    pf_part_clear(&part);
+}
+
 static void test_recordings_match_quadrature(void **state)
 {
     (void)state;
     random_source source = {77};
     extremes seen = {0};
     for (int n = 0; n < CASES; n++) {
-        double t[40], v[40], i[40], when;
-        pf_part part;
-        pf_profile profile;
-        pf_part_init(&part);
-        pf_profile_init(&profile);
-        random_profile(&source, PF_START_CURRENT_LIMIT, 0, &profile);
-        profile_state(&profile, "ambient_temperature=25 running_current=0");
-        double supply = profile.value[PF_SUPPLY_VOLTAGE].typ;
-        random_part(&source, supply, &part);
-        assert_int_equal(pf_profile_finish(&profile, NULL, NULL), PF_OK);
+        double t[40], v[40], i[40], supply = random_log_between(&source, 5, 60);
         const pf_capture capture = {"c", random_form(&source, supply, t, v, i), t, v, i};
-        const form shape = {t, v, i, capture.count};
-        note(&seen, rise_of(&profile, &capture, &part, PF_RECORDED),
-             exact_hot_peak_K(&part, &shape, &when));
-        pf_part_clear(&part);
+        try_recording(&source, supply, &capture, &seen);
     }
     report("recordings", &seen);
+    expect_within(&seen);
+}
+
+/* A triangle of some 100 us in a quarter of a second of a small current. */
+static void test_a_short_spike_in_a_long_recording_is_not_lost(void **state)
+{
+    (void)state;
+    random_source source = {78};
+    extremes seen = {0};
+    for (int n = 0; n < CASES; n++) {
+        double width = random_log_between(&source, 2e-5, 1e-3),
+               at = random_between(&source, 0.01, 0.2);
+        double supply = random_log_between(&source, 5, 60);
+        const double t[] = {0, at, at + width / 2, at + width, 0.25};
+        const double v[] = {supply, supply, supply, supply, supply}, i[] = {0.1, 0.1, 20, 0.1, 0};
+        const pf_capture capture = {"spike", 5, t, v, i};
+        try_recording(&source, supply, &capture, &seen);
+    }
+    report("spikes", &seen);
+    expect_within(&seen);
+}
+
+/* What an oscilloscope gives: many even samples. */
+static void test_a_dense_recording_matches_quadrature(void **state)
+{
+    (void)state;
+    enum { SAMPLES = 1000 };
+    static double t[SAMPLES], v[SAMPLES], i[SAMPLES];
+    random_source source = {79};
+    extremes seen = {0};
+    for (int n = 0; n < CASES / 8; n++) {
+        double supply = random_log_between(&source, 5, 60);
+        double length = random_log_between(&source, 1e-3, 5e-2);
+        for (int k = 0; k < SAMPLES; k++) {
+            double x = (double)k / SAMPLES;
+            t[k] = length * x;
+            v[k] = supply * (1 - x);
+            i[k] = 5 + 3 * sin(9 * x);
+        }
+        const pf_capture capture = {"scope", SAMPLES, t, v, i};
+        try_recording(&source, supply, &capture, &seen);
+    }
+    report("dense recordings", &seen);
     expect_within(&seen);
 }
 
@@ -168,6 +218,8 @@ int main(void)
         cmocka_unit_test(test_quadrature_itself_meets_the_closed_forms),
         cmocka_unit_test(test_starts_of_every_control_match_quadrature),
         cmocka_unit_test(test_recordings_match_quadrature),
+        cmocka_unit_test(test_a_short_spike_in_a_long_recording_is_not_lost),
+        cmocka_unit_test(test_a_dense_recording_matches_quadrature),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
