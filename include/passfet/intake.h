@@ -60,8 +60,8 @@ typedef struct pf_cell_reading {
 } pf_cell_reading;
 
 /* One row that is kept out, with the cells as they were read. reason names what is wrong with it;
-** where another row of the same part is at fault it says so. cell_count 0: the header of a file
-** whose rows follow stands in header. */
+** where another row of the same part is at fault it says so. Before the first bad row of a file its
+** header comes by itself, with cell_count 0 and no reason. */
 typedef struct pf_bad_row {
     const char *file;
     size_t line;

@@ -21,7 +21,7 @@
     }
 #define THERMAL_RULE                                                                               \
     {                                                                                              \
-        PF_THERMAL, 0, 1e-9, 2000, false, false, false, PF_BOUND_NONE                              \
+        PF_THERMAL, 0, 1e-6, 2000, false, false, false, PF_BOUND_NONE                              \
     }
 #define RDSON_RULE                                                                                 \
     {                                                                                              \

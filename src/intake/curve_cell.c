@@ -15,7 +15,7 @@ static const pf_value_rule vds_rule = {PF_VOLTAGE, 0,     1e-6,  5000,
                                        true,       false, false, PF_BOUND_NONE};
 static const pf_value_rule id_rule = {PF_CURRENT, 0,     1e-9,  50000,
                                       true,       false, false, PF_BOUND_NONE};
-static const pf_value_rule zth_rule = {PF_THERMAL, 0,     1e-9,  2000,
+static const pf_value_rule zth_rule = {PF_THERMAL, 0,     1e-6,  2000,
                                        false,      false, false, PF_BOUND_NONE};
 
 pf_status pf_raw_points_add(pf_raw_points *points, pf_raw_point point)

@@ -281,9 +281,9 @@ static pf_status check_interval(profile_reading *reading, pf_parameter parameter
                                 "min, typ and max out of order");
     if (value->min >= fact->lowest && value->max <= fact->highest) return PF_OK;
     double bad = value->min < fact->lowest ? value->min : value->max;
-    pf_value_print(low, fact->lowest, fact->quantity, 0);
-    pf_value_print(high, fact->highest, fact->quantity, 0);
-    pf_value_print(shown, bad, fact->quantity, 0);
+    pf_value_print(low, fact->lowest, fact->quantity, 6);
+    pf_value_print(high, fact->highest, fact->quantity, 6);
+    pf_value_print(shown, bad, fact->quantity, 6);
     snprintf(right, sizeof right, "a value from %s to %s", low, high);
     snprintf(wrong, sizeof wrong, "%s is not possible here", shown);
     return refuse_parameter(reading, parameter, right, wrong);

@@ -82,7 +82,7 @@ void pf_reader_tell(pf_reader *reader, const char *part, size_t index, double va
     else if (value != value)
         snprintf(stored, sizeof stored, "not stated");
     else
-        pf_value_print(stored, value, quantity, 0);
+        pf_value_print(stored, value, quantity, 12);
     pf_reader_tell_text(reader, part, index, stored);
 }
 
@@ -93,7 +93,13 @@ void pf_reader_bad_row(pf_reader *reader, size_t line, const char *const *cell, 
     if (!reader->options->keep_good || !reader->options->bad_row) return;
     for (size_t i = 0; i < reader->column_count; i++)
         header[i] = reader->column[i].name;
-    pf_bad_row bad = {reader->file, line, header, reader->column_count, cell, count, reason};
+    pf_bad_row bad = {reader->file, reader->header_line, header, reader->column_count, NULL, 0, ""};
+    if (!reader->header_handed) reader->options->bad_row(reader->options->context, &bad);
+    reader->header_handed = true;
+    bad.line = line;
+    bad.cell = cell;
+    bad.cell_count = count;
+    bad.reason = reason;
     reader->options->bad_row(reader->options->context, &bad);
 }
 

@@ -36,6 +36,7 @@ typedef struct pf_reader {
     bool units_may_follow;         /* the next row may be a row of units */
 
     size_t header_line;
+    bool header_handed;       /* to whoever keeps bad rows */
     bool some_even, some_odd; /* some row has as many cells as the header; some has not */
 
     /* of the row at hand */

@@ -305,14 +305,14 @@ static pf_status check_range(const pf_value_rule *rule, pf_value *value, pf_faul
     value->negative = signbit(value->value) && value->value != 0;
     if (rule->signless) value->value = fabs(value->value);
     if (value->value >= rule->lowest && value->value <= rule->highest) return PF_OK;
-    pf_value_print(low, rule->lowest, rule->quantity, 0);
-    pf_value_print(high, rule->highest, rule->quantity, 0);
+    pf_value_print(low, rule->lowest, rule->quantity, 6);
+    pf_value_print(high, rule->highest, rule->quantity, 6);
     if (rule->lowest >= 0 && value->value < 0) {
         snprintf(right, sizeof right, "a value from %s to %s; are these logarithms?", low, high);
         return pf_fault_set(fault, right, "negative");
     }
     char shown[PF_UNIT_ROOM];
-    pf_value_print(shown, value->value, rule->quantity, 0);
+    pf_value_print(shown, value->value, rule->quantity, 6);
     snprintf(right, sizeof right, "a value from %s to %s", low, high);
     return pf_fault_set(fault, right, "%s is not possible here", shown);
 }

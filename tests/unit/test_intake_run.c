@@ -242,6 +242,8 @@ static void hear_bad_row(void *context, const pf_bad_row *row)
 {
     run *now = context;
     size_t at = strlen(now->heard);
+    for (size_t i = 0; i < row->header_count && row->cell_count == 0; i++)
+        at += (size_t)snprintf(now->heard + at, sizeof now->heard - at, "%s ", row->header[i]);
     at += (size_t)snprintf(now->heard + at, sizeof now->heard - at, "%zu", row->line);
     for (size_t i = 0; i < row->cell_count; i++)
         at += (size_t)snprintf(now->heard + at, sizeof now->heard - at, "|%s", row->cell[i]);
@@ -269,7 +271,7 @@ static void test_good_rows_are_kept_and_bad_ones_handed_over(void **state)
                           "part,polarity,vds_max,tj_max\nA,N,100,175\nB,N,bad,175\n"
                           "C,N,100\nD,N,60,150\n"),
                      PF_OK);
-    assert_string_equal(now->heard, "3|B|N|bad|175\n4|C|N|100\n");
+    assert_string_equal(now->heard, "part polarity vds_max tj_max 1\n3|B|N|bad|175\n4|C|N|100\n");
     assert_int_equal(now->summary.refused_rows, 2);
     assert_false(change_of(now, "A")->refused || change_of(now, "D")->refused);
     assert_true(change_of(now, "B")->refused && change_of(now, "C")->refused);
@@ -284,7 +286,7 @@ static void test_a_curve_with_a_bad_row_is_kept_out_whole(void **state)
                           "part,pulse,vds,id\nA,1ms,1,100\nA,1ms,90,bad\nB,1ms,1,80\n"
                           "B,1ms,50,3\n"),
                      PF_OK);
-    assert_string_equal(now->heard, "2|A|1ms|1|100\n3|A|1ms|90|bad\n");
+    assert_string_equal(now->heard, "part pulse vds id 1\n2|A|1ms|1|100\n3|A|1ms|90|bad\n");
     assert_false(change_of(now, "A")->soa_given);
     assert_true(change_of(now, "B")->soa_given);
 }
