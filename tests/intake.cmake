@@ -18,6 +18,7 @@ if(Python3_FOUND)
 endif()
 pf_test(test_intake_profile SOURCES unit/test_intake_profile.c LIBRARIES ${INTAKE})
 pf_test(test_intake_run SOURCES unit/test_intake_run.c LIBRARIES ${INTAKE})
+pf_test(test_intake_doc SOURCES unit/test_intake_doc.c LIBRARIES ${INTAKE})
 pf_test(test_device_plausibility SOURCES unit/test_device_plausibility.c LIBRARIES pf_device)
 
 # What everything stands on.
