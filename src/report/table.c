@@ -63,24 +63,6 @@ static void print_rule(FILE *out, const pf_derating *rule)
                                                  : "quoted from memory: check the standard");
 }
 
-/* A text of any length on lines that begin with an indent. */
-static void print_wrapped(FILE *out, const char *text, size_t indent)
-{
-    size_t room = PF_TABLE_COLUMNS - indent;
-    while (*text) {
-        size_t length = 0, blank = 0, width = 0;
-        for (; text[length] && width <= room; length++) {
-            if (text[length] == ' ') blank = length;
-            width += ((unsigned char)text[length] & 0xC0) != 0x80;
-        }
-        if (text[length] || width > room) length = blank ? blank : length - 1;
-        fprintf(out, "%*s%.*s\n", (int)indent, "", (int)length, text);
-        text += length;
-        while (*text == ' ')
-            text++;
-    }
-}
-
 static void print_card(FILE *out, const pf_plan *plan)
 {
     static const pf_parameter shown[] = {
@@ -102,7 +84,7 @@ static void print_card(FILE *out, const pf_plan *plan)
     print_rule(out, &profile->derating);
     if (pf_plan_stall(plan)) {
         fputs("  THE CARD DOES NOT START:\n", out);
-        print_wrapped(out, pf_plan_stall(plan), 4);
+        pf_wrapped_print(out, pf_plan_stall(plan), 4);
     }
     fputc('\n', out);
 }
@@ -161,7 +143,7 @@ static void print_reason(FILE *out, const pf_plan *plan, const pf_assessment *as
     const pf_check *check = pf_assessment_decisive(assessment);
     if (assessment->verdict == PF_PASS || !check) return;
     pf_check_print(plan, check, reason, sizeof reason);
-    print_wrapped(out, reason, W_RANK + 3);
+    pf_wrapped_print(out, reason, W_RANK + 3);
 }
 
 static void print_cards(FILE *out, const pf_ranking *ranking, const pf_row *row)
@@ -173,7 +155,7 @@ static void print_cards(FILE *out, const pf_ranking *ranking, const pf_row *row)
         snprintf(line, sizeof line, "%s: %s, SOA margin %s%s",
                  pf_plan_profile(ranking->plan[i])->name, pf_verdict_text(on->verdict), margin,
                  i == row->deciding_profile ? " (decides)" : "");
-        print_wrapped(out, line, W_RANK + 3);
+        pf_wrapped_print(out, line, W_RANK + 3);
     }
 }
 

@@ -82,3 +82,20 @@ void pf_text_field_print(FILE *out, const char *text, size_t width, bool right)
     if (cut) fputs("\xE2\x80\xA6", out);
     if (!right) fprintf(out, "%*s", (int)pad, "");
 }
+
+void pf_wrapped_print(FILE *out, const char *text, size_t indent)
+{
+    size_t room = PF_TABLE_COLUMNS - indent;
+    while (*text) {
+        size_t length = 0, blank = 0, width = 0;
+        for (; text[length] && width <= room; length++) {
+            if (text[length] == ' ') blank = length;
+            width += ((unsigned char)text[length] & 0xC0) != 0x80;
+        }
+        if (text[length] || width > room) length = blank ? blank : length - 1;
+        fprintf(out, "%*s%.*s\n", (int)indent, "", (int)length, text);
+        text += length;
+        while (*text == ' ')
+            text++;
+    }
+}

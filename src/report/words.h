@@ -25,4 +25,7 @@ size_t pf_text_width(const char *text);
 /* Writes text in a field of width characters: padded, or cut with an ellipsis. */
 void pf_text_field_print(FILE *out, const char *text, size_t width, bool right);
 
+/* A text of any length on lines of at most PF_TABLE_COLUMNS that begin with an indent. */
+void pf_wrapped_print(FILE *out, const char *text, size_t indent);
+
 #endif
