@@ -1,8 +1,6 @@
 /* events.c: every event of a plan on one part, at every corner; the worst counts.
 **
-** A corner that cannot be assessed makes the event unassessed, unless another corner is already
-*known
-** to be worse than required: what is known to fail is said.
+** A corner that cannot be assessed makes the event unassessed.
 */
 #include "base/memory.h"
 #include "base/number.h"
@@ -86,6 +84,28 @@ static void take(trial *test, unsigned corner, const pf_response *response, cons
     outcome->duration_s = wave->duration_s;
 }
 
+/* What flows at a corner of an event without a waveform. */
+static double rectangle_current(const pf_profile *profile, pf_event event, const pf_corner *at)
+{
+    double trip_A = at->value[PF_TRIP_CURRENT];
+    if (event == PF_TRIP) return trip_A;
+    double fault_A = pf_corner_fault_A(profile, at);
+    return event == PF_TURN_OFF ? fmax(fault_A, trip_A) : fault_A;
+}
+
+/* The highest current over all corners, which no part changes. */
+static double peak_current(const pf_profile *profile, const pf_slot *slot)
+{
+    double highest = PF_NONE;
+    if (slot->waves.count) return slot->waves.unbounded ? PF_NONE : slot->waves.peak_current_A;
+    for (unsigned i = 0; i < slot->corners.number && slot->event != PF_SUPPLY_STEP; i++) {
+        pf_corner at;
+        pf_corner_at(&slot->corners, profile, i, &at);
+        highest = fmax(highest, rectangle_current(profile, slot->event, &at));
+    }
+    return highest;
+}
+
 static pf_wave rectangle_scalars(double vds_V, double id_A, double time_s)
 {
     return (pf_wave){.duration_s = time_s,
@@ -99,7 +119,6 @@ static void try_rectangle(trial *test, unsigned corner, double vds_V, double id_
     pf_response response;
     pf_wave scalars = rectangle_scalars(vds_V, id_A, time_s);
     pf_respond_rectangle(&test->subject, vds_V, id_A, time_s, &response);
-    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, id_A);
     take(test, corner, &response, &scalars);
 }
 
@@ -127,7 +146,6 @@ static void try_retry(trial *test, unsigned corner, const pf_corner *at)
     pf_response response;
     pf_wave scalars = rectangle_scalars(vds_V, id_A, on_s);
     pf_respond_rectangle(&test->subject, vds_V, id_A, on_s, &response);
-    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, id_A);
     double earlier = pf_train_zth(test->subject.zth, on_s, interval_s, count) +
                      case_warming(test, at, interval_s, count) * on_s / interval_s;
     if (!pf_is_stated(earlier) && response.cause == PF_CAUSE_NONE)
@@ -144,9 +162,8 @@ static void try_turn_off(trial *test, unsigned corner, const pf_corner *at)
     const pf_part *part = on->part;
     pf_outcome *outcome = test->outcome;
     double vds_V = at->value[PF_SUPPLY_VOLTAGE], vds_max_V = part->vds_max_V;
-    double id_A = fmax(pf_corner_fault_A(&on->plan->profile, at), at->value[PF_TRIP_CURRENT]);
+    double id_A = rectangle_current(&on->plan->profile, PF_TURN_OFF, at);
     double energy_J = 0.5 * at->value[PF_SUPPLY_INDUCTANCE] * id_A * id_A;
-    outcome->peak_current_A = fmax(outcome->peak_current_A, id_A);
     if (on->plan->profile.stated[PF_CLAMP_VOLTAGE]) return; /* the clamp takes it */
     energy_J = vds_max_V > vds_V ? energy_J * vds_max_V / (vds_max_V - vds_V) : INFINITY;
     if (!pf_is_stated(vds_max_V)) energy_J = PF_NONE;
@@ -163,7 +180,6 @@ static void take_waves(trial *test, const pf_waves *waves)
 {
     pf_response response;
     pf_respond_waves(&test->subject, waves, &response);
-    test->outcome->peak_current_A = fmax(test->outcome->peak_current_A, waves->peak_current_A);
     take(test, response.corner, &response, &waves->wave[response.corner]);
 }
 
@@ -234,7 +250,8 @@ static void conclude(trial *test)
     pf_outcome *outcome = test->outcome;
     if (test->junction_unknown) {
         outcome->peak_junction_degC = PF_NONE;
-        outcome->junction_cause = PF_CAUSE_NO_ZTH;
+        outcome->junction_cause =
+            pf_zth_stated(test->subject.zth) ? PF_CAUSE_UNBOUNDED_CURRENT : PF_CAUSE_NO_ZTH;
     }
     if (outcome->soa_margin == 0) outcome->cause = PF_CAUSE_HOT_START;
 }
@@ -278,6 +295,7 @@ static pf_status evaluate_slot(const evaluation *on, size_t index)
         outcome_of_running(on, outcome);
         return PF_OK;
     }
+    outcome->peak_current_A = peak_current(&on->plan->profile, slot);
     outcome->start_degC = start_of(on, slot->event);
     outcome->cause = outcome->junction_cause = why_not(on, slot, outcome->start_degC);
     if (outcome->cause != PF_CAUSE_NONE) return PF_OK;
