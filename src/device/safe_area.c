@@ -7,7 +7,7 @@
 
 /* How far right of its last point a curve may still be read: ln 1.005, the width of a pencil line.
  */
-#define CHART_READING 0.00498754
+#define CHART_READING 0.0049875415110391
 
 /* Pulse widths closer than this are the same, whatever their last bit. */
 #define SAME_TIME 1e-12

@@ -82,8 +82,8 @@ static void test_right_end_may_be_read_half_a_per_cent_further(void **state)
 {
     (void)state;
     double slope = log(8 / 100.0) / log(6);
-    assert_near(current_at(TWO, 60 * 1.00499, 1e-3), 8 * pow(1.00499, slope), 1e-9);
-    assert_double(current_at(TWO, 60 * 1.00499, 1e-3), <, 8);
+    assert_near(current_at(TWO, 60 * 1.005, 1e-3), 8 * pow(1.005, slope), 1e-9);
+    assert_double(current_at(TWO, 60 * 1.005, 1e-3), <, 8);
     assert_not_stated(current_at(TWO, 60 * 1.0051, 1e-3));
     assert_not_stated(current_at(TWO, 80, 1e-3));
 }

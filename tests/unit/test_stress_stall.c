@@ -174,7 +174,9 @@ static void test_unbounded_current_into_constant_power_is_unassessed(void **stat
     assert_non_null(pf_plan_stall(b.plan));
     const pf_outcome *o = bench_outcome(&b, PF_START_UP);
     assert_int_equal(o->cause, PF_CAUSE_UNBOUNDED_CURRENT);
+    assert_int_equal(o->junction_cause, PF_CAUSE_UNBOUNDED_CURRENT);
     assert_not_stated(o->soa_margin);
+    assert_not_stated(o->peak_current_A);
     assert_int_not_equal(b.assessment.verdict, PF_PASS);
     bench_clear(&b);
 }

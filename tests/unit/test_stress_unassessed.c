@@ -88,6 +88,18 @@ static void test_no_rdson_at_the_gate_drive_is_unassessed(void **state)
     bench_clear(&b);
 }
 
+/* The peak current of an event does not hang on where it starts: what is known to fail is said. */
+static void test_a_current_over_the_pulse_rating_fails_though_the_start_is_open(void **state)
+{
+    (void)state;
+    bench b;
+    bench_run(&b, "rdson= id_pulse=50", "trip_current=60 trip_time=1e-5");
+    assert_int_equal(bench_outcome(&b, PF_TRIP)->cause, PF_CAUSE_NO_START);
+    assert_near(bench_outcome(&b, PF_TRIP)->peak_current_A, 60, 0);
+    assert_int_equal(b.assessment.verdict, PF_FAIL);
+    bench_clear(&b);
+}
+
 static void test_no_rdson_leaves_a_start_from_ambient_assessed(void **state)
 {
     (void)state;
@@ -213,6 +225,7 @@ int main(void)
         cmocka_unit_test(test_fault_longer_than_the_longest_line_with_zth_but_no_dc_is_unassessed),
         cmocka_unit_test(test_extend_assesses_it_and_says_so),
         cmocka_unit_test(test_no_rdson_at_the_gate_drive_is_unassessed),
+        cmocka_unit_test(test_a_current_over_the_pulse_rating_fails_though_the_start_is_open),
         cmocka_unit_test(test_no_rdson_leaves_a_start_from_ambient_assessed),
         cmocka_unit_test(test_no_tj_max_is_unassessed),
         cmocka_unit_test(test_no_thermal_resistance_is_unassessed),
