@@ -14,3 +14,13 @@ set(STORE_LOAD fault/store_load.c ${STORE_SUPPORT})
 pf_test(test_store_many SOURCES fault/test_store_many.c ${STORE_LOAD} LIBRARIES pf_store)
 pf_test(test_store_kill SOURCES fault/test_store_kill.c ${STORE_LOAD} LIBRARIES pf_store)
 pf_test(test_store_flips SOURCES fault/test_store_flips.c ${STORE_LOAD} LIBRARIES pf_store)
+pf_test(test_store_memory SOURCES fault/test_store_memory.c ${STORE_LOAD}
+  LIBRARIES pf_store PkgConfig::SQLITE)
+target_link_options(test_store_memory PRIVATE
+  -Wl,--wrap=malloc -Wl,--wrap=calloc -Wl,--wrap=realloc)
+add_executable(store_driver fault/store_driver.c fault/store_load.c)
+target_include_directories(store_driver PRIVATE ${CMAKE_CURRENT_SOURCE_DIR})
+target_link_libraries(store_driver PRIVATE pf_store)
+add_test(NAME test_store_calls COMMAND sh ${CMAKE_CURRENT_SOURCE_DIR}/fault/kill_at_calls.sh
+  $<TARGET_FILE:store_driver>)
+set_tests_properties(test_store_calls PROPERTIES SKIP_RETURN_CODE 77)

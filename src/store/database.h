@@ -75,6 +75,7 @@ struct pf_store {
     sqlite3_vfs *vfs; /* ours, with checksums of pages */
     char *path;       /* as the user named it, for messages */
     int wait_ms;
+    int64_t waiting_since_ms; /* of the lock at hand */
     const char *warning;
     sqlite3_stmt *statement[PF_SQL_COUNT];
     pf_field_order order;
@@ -97,6 +98,9 @@ pf_status pf_store_damaged(pf_store *store, pf_error *error, const char *what);
 
 /* Runs SQL that gives no rows. */
 pf_status pf_store_run(pf_store *store, const char *sql, pf_error *error) PF_MUST_USE;
+
+/* Waits for locks of this connection up to store->wait_ms. */
+void pf_store_queue(pf_store *store);
 
 /* A kept statement, reset. Bind all its parameters. */
 pf_status pf_store_statement(pf_store *store, pf_statement which, sqlite3_stmt **statement,

@@ -233,31 +233,3 @@ pf_status pf_store_import_part(pf_store *store, const pf_part_change *change, pf
     return pf_write_state(store, &target, merged, false, same ? target.curves : PF_CURVES_NEW,
                           error);
 }
-
-pf_status pf_store_import_commit(pf_store *store, int64_t *number, pf_error *error)
-{
-    pf_import *import = &store->import;
-    if (!import->open || import->broken) {
-        pf_store_import_rollback(store);
-        return pf_error_set(error, PF_BAD_ARGUMENT, "%s: no import is open", store->path);
-    }
-    pf_status status = pf_log_seal(store, import->entry, import->written, import->count, error);
-    if (status == PF_OK) status = pf_store_run(store, "COMMIT", error);
-    *number = import->entry;
-    if (status == PF_OK) import->open = false;
-    pf_store_import_rollback(store);
-    return status;
-}
-
-void pf_store_import_rollback(pf_store *store)
-{
-    pf_import *import = &store->import;
-    if (import->open) {
-        for (int i = 0; i < PF_SQL_COUNT; i++)
-            sqlite3_reset(store->statement[i]);
-        sqlite3_exec(store->db, "ROLLBACK", NULL, NULL, NULL);
-    }
-    pf_free(import->why);
-    import->why = NULL;
-    import->open = false;
-}

@@ -44,7 +44,7 @@ static pf_status configure(pf_store *store, bool write, pf_error *error)
     int reserve = PF_CHECK_BYTES;
     sqlite3 *db = store->db;
     sqlite3_extended_result_codes(db, 1);
-    sqlite3_busy_timeout(db, store->wait_ms);
+    pf_store_queue(store);
     sqlite3_limit(db, SQLITE_LIMIT_LENGTH, VALUE_BYTES_MAX);
     sqlite3_limit(db, SQLITE_LIMIT_ATTACHED, 0);
     sqlite3_db_config(db, SQLITE_DBCONFIG_ENABLE_LOAD_EXTENSION, 0, (int *)NULL);
@@ -127,7 +127,6 @@ const char *pf_store_warning(const pf_store *store)
 void pf_store_wait(pf_store *store, int milliseconds)
 {
     store->wait_ms = milliseconds;
-    sqlite3_busy_timeout(store->db, milliseconds);
 }
 
 void pf_store_limit_pages(pf_store *store, int pages)

@@ -217,7 +217,9 @@ pf_status pf_record_read(pf_store *store, sqlite3_stmt *row, pf_stored_part *sto
     bool sound = measure(row, store->order.texts, &found);
     if (sound && pf_grow((void **)&stored->memory, &stored->room, found.room, 1) != PF_OK)
         return pf_store_no_memory(store, error);
-    if (!sound || !fill(row, store->order.texts, &found, stored)) {
+    sound = sound && fill(row, store->order.texts, &found, stored);
+    if (sqlite3_errcode(store->db) == SQLITE_NOMEM) return pf_store_no_memory(store, error);
+    if (!sound) {
         char what[64];
         sqlite3_snprintf(sizeof what, what, "part %lld says what cannot be",
                          sqlite3_column_int64(row, COLUMN_ID));
