@@ -128,7 +128,8 @@ def ratings(die):
     year, month = die["random"].randint(2017, 2025), die["random"].randint(1, 12)
     row = {
         "part": die["name"], "maker": die["maker"], "polarity": die["polarity"],
-        "package": die["package"], "status": die["random"].choice(["active", "active", "active", "not-for-new"]),
+        "package": die["package"],
+        "status": die["random"].choice(["active", "active", "active", "not-for-new"]),
         "vds_max [V]": f"{sign}{die['vds']}", "vgs_max [V]": f"{sign}20",
         "id_cont [A]": sign + digits(die["id_cont"]), "id_pulse [A]": sign + digits(die["id_pulse"]),
         "rdson_max @ 10 V [mOhm]": digits(die["ron"] * 1e3),
@@ -139,7 +140,7 @@ def ratings(die):
         "crss [pF]": digits(ciss * spread(0.01, 0.03), 2), "tj_max [degC]": die["tj_max"],
         "rth_jc [K/W]": digits(rth_jc), "rth_ja [K/W]": CASE[die["package"]][1],
         "avalanche_energy [mJ]": digits(energy),
-        "avalanche_current [A]": digits(die["id_cont"] * spread(0.25, 0.4), 2),
+        "avalanche_current [A]": digits(die["id_cont"] * spread(0.45, 0.65), 2),
         "price": digits(CASE[die["package"]][3] + area * spread(0.03, 0.06), 2),
         "datasheet": f"{die['maker'][0]}D-{die['random'].randint(1000, 9999)}",
         "datasheet_date": f"{year}-{month:02d}", "soa": "", "zth": ""}
