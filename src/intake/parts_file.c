@@ -47,6 +47,7 @@ static pf_status read_text(pf_reader *reader, size_t index, parts_row *row)
     if (place < 2) return PF_OK; /* part and maker: names, not values */
     row->fresh.texts_given |= bit(place);
     if (pf_not_stated(text)) return PF_OK;
+    text = pf_undefused(text);
     pf_status status =
         pf_text_copy_n(pf_part_text(&row->fresh.part, field), text.text, text.length);
     if (status == PF_OK)

@@ -138,7 +138,7 @@ static pf_status read_name(pf_reader *reader, int index, bool required, pf_slice
                      "a name with a line break, a control character or no end");
         return pf_reader_refuse_cell(reader, (size_t)index, &fault);
     }
-    *name = text;
+    *name = pf_undefused(text);
     return PF_OK;
 }
 

@@ -44,6 +44,13 @@ pf_slice pf_trim(pf_slice slice)
     }
 }
 
+pf_slice pf_undefused(pf_slice text)
+{
+    bool defused = text.length > 1 && text.text[0] == '\'' && strchr("=+-@'", text.text[1]);
+    if (!defused || text.text[1] == '\0') return text;
+    return (pf_slice){text.text + 1, text.length - 1};
+}
+
 bool pf_same_word(const char *left, const char *right)
 {
     while (*left && lower(*left) == lower(*right))

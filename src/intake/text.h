@@ -23,6 +23,10 @@ pf_slice pf_trim(pf_slice slice);
  */
 size_t pf_blank_length(const char *text, size_t length);
 
+/* Without the `'` that keeps a spreadsheet from running a text as a formula, as our own CSV has it in
+** front of = + - @ and of a `'` before one of these. */
+pf_slice pf_undefused(pf_slice text);
+
 /* Letters (ASCII) in either case. */
 bool pf_same_word(const char *left, const char *right);
 bool pf_slice_is(pf_slice slice, const char *word);
