@@ -14,10 +14,30 @@
 
 #define PAGES_AT_A_TIME 1024
 
-static pf_status copy_pages(pf_store *store, sqlite3 *to, pf_error *error)
+/* What stopped the copy. */
+static pf_status fail_copy(pf_store *store, const char *path, int code, pf_error *error)
+{
+    switch (code & 0xFF) {
+    case SQLITE_NOMEM:
+        return pf_store_no_memory(store, error);
+    case SQLITE_BUSY:
+    case SQLITE_LOCKED:
+        return pf_store_fail(store, SQLITE_BUSY, error);
+    case SQLITE_FULL:
+        return pf_error_set(error, PF_DATABASE, "%s: the disk is full; no copy was made", path);
+    case SQLITE_CANTOPEN:
+        return pf_error_set(error, PF_FILE, "%s cannot be written", path);
+    default:
+        if (code == SQLITE_IOERR_NOMEM) return pf_store_no_memory(store, error);
+        return pf_error_set(error, PF_DATABASE, "%s: no copy was made (%s)", path,
+                            sqlite3_errstr(code));
+    }
+}
+
+static pf_status copy_pages(pf_store *store, sqlite3 *to, const char *path, pf_error *error)
 {
     sqlite3_backup *backup = sqlite3_backup_init(to, "main", store->db, "main");
-    if (!backup) return pf_error_set(error, PF_DATABASE, "backup: %s", sqlite3_errmsg(to));
+    if (!backup) return fail_copy(store, path, sqlite3_extended_errcode(to), error);
     int code, waited_ms = 0;
     do {
         code = sqlite3_backup_step(backup, PAGES_AT_A_TIME);
@@ -25,13 +45,8 @@ static pf_status copy_pages(pf_store *store, sqlite3 *to, pf_error *error)
         if (busy && waited_ms >= store->wait_ms) break;
         if (busy) waited_ms += sqlite3_sleep(50);
     } while (code == SQLITE_OK || code == SQLITE_BUSY || code == SQLITE_LOCKED);
-    int finish = sqlite3_backup_finish(backup);
-    if (code == SQLITE_DONE) return PF_OK;
-    if (code == SQLITE_FULL)
-        return pf_error_set(error, PF_DATABASE, "backup: the disk is full; no copy was made");
-    if (code == SQLITE_BUSY || code == SQLITE_LOCKED) return pf_store_fail(store, code, error);
-    return pf_error_set(error, PF_DATABASE, "backup: %s (%s)", sqlite3_errstr(code),
-                        sqlite3_errstr(finish));
+    sqlite3_backup_finish(backup);
+    return code == SQLITE_DONE ? PF_OK : fail_copy(store, path, code, error);
 }
 
 /* Copies into a file that must not be there yet. */
@@ -40,18 +55,18 @@ static pf_status write_copy(pf_store *store, const char *path, pf_error *error)
     sqlite3 *to = NULL;
     int reserve = PF_CHECK_BYTES;
     int flags = SQLITE_OPEN_READWRITE | SQLITE_OPEN_CREATE | SQLITE_OPEN_NOMUTEX;
+    pf_status status = PF_OK;
     int code = sqlite3_open_v2(path, &to, flags, store->vfs->zName);
-    pf_status status = code == SQLITE_OK
-                           ? PF_OK
-                           : pf_error_set(error, PF_FILE, "%s cannot be written (%s)", path,
-                                          to ? sqlite3_errmsg(to) : sqlite3_errstr(code));
-    if (status == PF_OK) {
+    if (code == SQLITE_OK) {
         sqlite3_file_control(to, "main", SQLITE_FCNTL_RESERVE_BYTES, &reserve);
-        sqlite3_exec(to, "PRAGMA page_size=8192; PRAGMA synchronous=EXTRA", NULL, NULL, NULL);
-        status = copy_pages(store, to, error);
+        code =
+            sqlite3_exec(to, "PRAGMA page_size=8192; PRAGMA synchronous=EXTRA", NULL, NULL, NULL);
     }
-    if (sqlite3_close(to) != SQLITE_OK && status == PF_OK)
-        status = pf_error_set(error, PF_DATABASE, "%s could not be closed", path);
+    if (code == SQLITE_OK)
+        status = copy_pages(store, to, path, error);
+    else
+        status = fail_copy(store, path, code, error);
+    sqlite3_close(to);
     return status;
 }
 

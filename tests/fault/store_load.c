@@ -83,9 +83,11 @@ static pf_status check_part(const pf_part *part, unsigned *imports, unsigned tag
     pf_part expected;
     unsigned tag, index;
     pf_part_init(&expected);
-    bool right = sscanf(part->name, "%u-%u", &tag, &index) == 2 &&
-                 make_part(&expected, tag, index) && pf_part_equal(part, &expected);
+    bool named = sscanf(part->name, "%u-%u", &tag, &index) == 2;
+    bool made = named && make_part(&expected, tag, index);
+    bool right = made && pf_part_equal(part, &expected);
     pf_part_clear(&expected);
+    if (named && !made) return pf_error_set(error, PF_NO_MEMORY, "out of memory");
     if (!right) return pf_error_set(error, PF_BAD_INPUT, "part %s is not as imported", part->name);
     if (imports && tag < tags) imports[tag]++;
     return PF_OK;

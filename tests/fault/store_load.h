@@ -4,7 +4,7 @@
 
 #include <passfet/store.h>
 
-#define LOAD_PARTS 5 /* parts of one import */
+#define LOAD_PARTS 3 /* parts of one import */
 
 /* How often to do something: `quick` by default, `full` where PF_FAULT_FULL is set. */
 unsigned load_count(unsigned quick, unsigned full);

@@ -64,7 +64,7 @@ static int read_imports(const char *path, unsigned imports)
             right = seen[i] == 0 || seen[i] == LOAD_PARTS;
         pf_store_close(store);
         looks++;
-        usleep(20000);
+        usleep(100000);
     }
     free(seen);
     if (error.text[0]) fprintf(stderr, "reader: %s\n", error.text);

@@ -1,7 +1,7 @@
 /* test_store_memory.c: every allocation fails in turn, ours and SQLite's: no crash, no leak of a
 ** half-made state, and the answer is "out of memory".
 **
-** PF_FAULT_FULL set: each allocation of each scenario; else every 23rd.
+** PF_FAULT_FULL set: each allocation of each scenario; else every 41st.
 */
 #include "fault/store_load.h"
 #include "unit/store_support.h"
@@ -172,7 +172,7 @@ static bool fail_at(scenario *run, const char *path, long at, bool all_later)
 
 static void fail_each(bench *on, scenario *run, bool prepared)
 {
-    long stride = load_count(23, 1);
+    long stride = load_count(41, 1);
     for (int all_later = 0; all_later < 2; all_later++) {
         long at = 1;
         for (bool reached = true; reached; at += stride) {
