@@ -30,9 +30,10 @@
 typedef struct pf_store pf_store;
 
 typedef enum pf_store_mode {
-    PF_STORE_READ,  /* must exist; nothing is written but the recovery of a broken-off import */
-    PF_STORE_WRITE, /* must exist; an older layout is brought up to date */
-    PF_STORE_CREATE /* as WRITE; a new file is laid out where there is none or an empty one */
+    PF_STORE_READ,   /* must exist; nothing is written but the recovery of a broken-off import */
+    PF_STORE_WRITE,  /* must exist; an older layout is brought up to date */
+    PF_STORE_CREATE, /* as WRITE; a new file is laid out where there is none or an empty one */
+    PF_STORE_MEMORY  /* no file: empty, and gone when closed; the path is a name for messages */
 } pf_store_mode;
 
 /* Opens the database. *store is NULL on failure. PF_NOT_FOUND where there is no file and mode does

@@ -50,7 +50,7 @@ static pf_status open_store(const pf_cli *cli, const pf_import_run *run, pf_stor
                             pf_error *error)
 {
     bool fresh = access(cli->database, F_OK) != 0;
-    if (run->dry && fresh) return pf_store_open(":memory:", PF_STORE_CREATE, store, error);
+    if (run->dry && fresh) return pf_store_open(cli->database, PF_STORE_MEMORY, store, error);
     return pf_cli_open(cli, PF_STORE_CREATE, store, error);
 }
 

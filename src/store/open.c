@@ -66,15 +66,12 @@ static pf_status configure(pf_store *store, bool write, pf_error *error)
 
 /* Readers open for writing too, since only so can SQLite roll back what a killed import left; where
 ** the file is read-only, SQLite falls back by itself. */
-static pf_status connect_file(pf_store *store, pf_store_mode mode, pf_error *error)
+static pf_status connect_file(pf_store *store, const char *file, pf_store_mode mode,
+                              pf_error *error)
 {
-    char *plain;
-    int flags = SQLITE_OPEN_READWRITE | SQLITE_OPEN_NOMUTEX |
-                (mode == PF_STORE_CREATE ? SQLITE_OPEN_CREATE : 0);
-    if (plain_path(store->path, &plain) != PF_OK) return pf_store_no_memory(store, error);
-    int code = sqlite3_open_v2(plain, &store->db, flags, store->vfs->zName);
-    store->warning = pf_network_warning_of(plain);
-    pf_free(plain);
+    int create = mode == PF_STORE_CREATE || mode == PF_STORE_MEMORY ? SQLITE_OPEN_CREATE : 0;
+    int flags = SQLITE_OPEN_READWRITE | SQLITE_OPEN_NOMUTEX | create;
+    int code = sqlite3_open_v2(file, &store->db, flags, store->vfs->zName);
     if (code != SQLITE_OK) return pf_store_fail(store, code, error);
     if (mode != PF_STORE_READ && sqlite3_db_readonly(store->db, "main") == 1)
         return pf_error_set(error, PF_DATABASE, "%s cannot be written: it is read-only",
@@ -82,18 +79,39 @@ static pf_status connect_file(pf_store *store, pf_store_mode mode, pf_error *err
     return PF_OK;
 }
 
+static pf_status connect(pf_store *store, pf_store_mode mode, pf_error *error)
+{
+    char *plain;
+    if (mode == PF_STORE_MEMORY) return connect_file(store, ":memory:", mode, error);
+    if (plain_path(store->path, &plain) != PF_OK) return pf_store_no_memory(store, error);
+    pf_status status = connect_file(store, plain, mode, error);
+    store->warning = pf_network_warning_of(plain);
+    pf_free(plain);
+    return status;
+}
+
+/* Whether the mode may go on with what lies at the path. */
+static pf_status look(const char *path, pf_store_mode mode, pf_error *error)
+{
+    pf_error wrong = {0};
+    if (!*path) return pf_error_set(error, PF_BAD_ARGUMENT, "the database has no name");
+    if (mode == PF_STORE_MEMORY) return PF_OK;
+    pf_status status = pf_layout_recognise(path, &wrong);
+    if (status == PF_OK || (mode == PF_STORE_CREATE && status == PF_NOT_FOUND)) return PF_OK;
+    return pf_error_set(error, status, "%s", wrong.text);
+}
+
 pf_status pf_store_open(const char *path, pf_store_mode mode, pf_store **out, pf_error *error)
 {
-    bool write = mode != PF_STORE_READ, create = mode == PF_STORE_CREATE;
-    *out = NULL;
-    if (!*path) return pf_error_set(error, PF_BAD_ARGUMENT, "the database has no name");
-    pf_status status = pf_layout_recognise(path, create ? NULL : error);
-    if (status != PF_OK && !(create && status == PF_NOT_FOUND))
-        return create ? pf_layout_recognise(path, error) : status;
+    bool write = mode != PF_STORE_READ;
+    bool create = mode == PF_STORE_CREATE || mode == PF_STORE_MEMORY;
     pf_store *store;
+    *out = NULL;
+    pf_status status = look(path, mode, error);
+    if (status != PF_OK) return status;
     status = allocate(path, &store, error);
     if (store) store->wait_ms = PF_STORE_WAIT_S * 1000;
-    if (status == PF_OK) status = connect_file(store, mode, error);
+    if (status == PF_OK) status = connect(store, mode, error);
     if (status == PF_OK) status = configure(store, write, error);
     if (status == PF_OK) status = pf_layout_settle(store, write, create, error);
     if (status == PF_OK)

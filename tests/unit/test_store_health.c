@@ -255,6 +255,21 @@ static void test_a_name_like_a_uri_is_a_file_name(void **state)
     assert_int_equal(chdir(before), 0);
 }
 
+static void test_a_store_in_memory_leaves_no_file(void **state)
+{
+    bench *on = *state;
+    pf_part_change change;
+    int64_t parts;
+    pf_store_close(on->store);
+    remove(on->path);
+    assert_int_equal(pf_store_open(on->path, PF_STORE_MEMORY, &on->store, &on->error), PF_OK);
+    change_make(&change, "A", NULL, 1);
+    import_all(on, "ana", MONDAY, &change, 1);
+    assert_int_equal(pf_store_count(on->store, &parts, &on->error), PF_OK);
+    assert_int_equal(parts, 1);
+    assert_int_not_equal(access(on->path, F_OK), 0);
+}
+
 static void test_a_locked_database_is_said_to_be_busy(void **state)
 {
     bench *on = *state;
@@ -352,6 +367,7 @@ int main(void)
         TEST(test_json_that_differs_from_the_packed_curves_is_noticed),
         TEST(test_a_backup_is_the_same_and_never_overwrites),
         TEST(test_a_name_like_a_uri_is_a_file_name),
+        TEST(test_a_store_in_memory_leaves_no_file),
         TEST(test_a_locked_database_is_said_to_be_busy),
         TEST(test_a_full_disk_leaves_the_database_as_it_was),
         TEST(test_network_file_systems_are_warned_of),
