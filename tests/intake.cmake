@@ -24,3 +24,7 @@ pf_test(test_device_plausibility SOURCES unit/test_device_plausibility.c LIBRARI
 # What everything stands on.
 pf_test(test_base_number SOURCES unit/test_base_number.c LIBRARIES pf_base m)
 pf_test(test_base_units SOURCES unit/test_base_units.c LIBRARIES pf_base m)
+
+# Every allocation fails in turn.
+pf_test(test_intake_memory SOURCES fault/test_intake_memory.c LIBRARIES ${INTAKE})
+target_link_options(test_intake_memory PRIVATE -Wl,--wrap=calloc,--wrap=realloc)

@@ -69,7 +69,7 @@ const char *pf_encoding_guess(const char *bytes, size_t length, const char **rig
     if (length >= 4 && memcmp(bytes, "PK\003\004", 4) == 0)
         return "the file is a spreadsheet or archive, not CSV";
     if (memchr(bytes, 0, length)) return "zero bytes: the file is UTF-16 or no text at all";
-    *right = "save the sheet as \"CSV UTF-8\", or import it with --encoding windows-1252";
+    *right = "save the sheet as \"CSV UTF-8\"; import also takes --encoding windows-1252";
     return "bytes that are not UTF-8; they look like Windows-1252";
 }
 

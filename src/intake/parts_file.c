@@ -38,6 +38,37 @@ static pf_status refuse_blank(pf_reader *reader, size_t index)
 
 /* --- Cells --------------------------------------------------------------------------------- */
 
+/* A life-cycle status in the words that are kept, from those that people use; NULL for none. */
+static const char *status_word(pf_slice text)
+{
+    static const struct {
+        const char *kept, *names;
+    } words[] = {
+        {"active", "active|production|in production|in volume production"},
+        {"not-for-new", "not-for-new|nrnd|not for new design|not for new designs|"
+                        "not recommended for new design|not recommended for new designs"},
+        {"obsolete", "obsolete|eol|end of life|discontinued"},
+        {"banned", "banned"},
+    };
+    char folded[PF_FOLDED_ROOM];
+    pf_fold(text, folded);
+    for (size_t i = 0; i < sizeof words / sizeof *words; i++)
+        if (pf_folded_in(folded, words[i].names)) return words[i].kept;
+    return NULL;
+}
+
+static pf_status settle_status(pf_reader *reader, size_t index, pf_slice *text)
+{
+    pf_fault fault;
+    const char *kept = status_word(*text);
+    if (kept) {
+        *text = pf_slice_from(kept, strlen(kept));
+        return PF_OK;
+    }
+    pf_fault_set(&fault, "active, not-for-new, obsolete or banned", "no life-cycle status");
+    return pf_reader_refuse_cell(reader, index, &fault);
+}
+
 static pf_status read_text(pf_reader *reader, size_t index, parts_row *row)
 {
     size_t count;
@@ -46,10 +77,12 @@ static pf_status read_text(pf_reader *reader, size_t index, parts_row *row)
     pf_slice text = cell_text(reader, index);
     if (place < 2) return PF_OK; /* part and maker: names, not values */
     row->fresh.texts_given |= bit(place);
+    pf_status status = PF_OK;
     if (pf_not_stated(text)) return PF_OK;
     text = pf_undefused(text);
-    pf_status status =
-        pf_text_copy_n(pf_part_text(&row->fresh.part, field), text.text, text.length);
+    if (strcmp(field->csv, "status") == 0) status = settle_status(reader, index, &text);
+    if (status != PF_OK || reader->row_refused) return status;
+    status = pf_text_copy_n(pf_part_text(&row->fresh.part, field), text.text, text.length);
     if (status == PF_OK)
         pf_reader_tell_text(reader, row->shown, index, pf_part_text_value(&row->fresh.part, field));
     return status;

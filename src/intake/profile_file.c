@@ -305,6 +305,34 @@ static void on_finding(void *context, pf_parameter parameter, const char *wrong,
     if (reading->status == PF_OK) reading->status = status;
 }
 
+/* What the start control does not use is most likely meant for another control. */
+static pf_status warn_unused(profile_reading *reading)
+{
+    static const struct {
+        pf_parameter parameter;
+        pf_start_control control;
+    } owned[] = {{PF_OUTPUT_SLEW, PF_START_SLEW},
+                 {PF_GATE_CURRENT, PF_START_SLEW},
+                 {PF_GATE_CAPACITANCE, PF_START_SLEW},
+                 {PF_POWER_LIMIT, PF_START_POWER_LIMIT},
+                 {PF_FOLDBACK_CURRENT, PF_START_FOLDBACK}};
+    const pf_profile *profile = reading->profile;
+    pf_status status = PF_OK;
+    for (size_t i = 0; i < sizeof owned / sizeof *owned && status == PF_OK; i++) {
+        pf_parameter parameter = owned[i].parameter;
+        if (!profile->stated[parameter] || profile->control == owned[i].control ||
+            profile->control == PF_START_NONE)
+            continue;
+        pf_place place = {reading->sheet->file, reading->line[parameter],
+                          pf_parameter_facts()[parameter].name, NULL};
+        status =
+            pf_problems_add(reading->sheet->problems, PF_SEVERITY_WARNING, place,
+                            "look whether start_control is right", "not used: start_control is %s",
+                            pf_start_control_text(profile->control));
+    }
+    return status;
+}
+
 static pf_status settle(profile_reading *reading)
 {
     pf_profile *profile = reading->profile;
@@ -316,6 +344,7 @@ static pf_status settle(profile_reading *reading)
         fill(&profile->value[i]);
         if (status == PF_OK) status = check_interval(reading, (pf_parameter)i);
     }
+    if (status == PF_OK) status = warn_unused(reading);
     if (status != PF_OK) return status;
     pf_status finished = pf_profile_finish(profile, on_finding, reading);
     return finished == PF_OK || finished == PF_BAD_INPUT ? reading->status : finished;

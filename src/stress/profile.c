@@ -119,6 +119,15 @@ static void check_pair(findings *list, const pf_profile *profile, pf_parameter o
         report(list, other, wrong, "both, or neither");
 }
 
+static void check_start_load(findings *list, const pf_profile *profile)
+{
+    bool load = profile->stated[PF_START_LOAD_CURRENT] ||
+                profile->stated[PF_START_LOAD_RESISTANCE] || profile->stated[PF_START_LOAD_POWER];
+    if (profile->stated[PF_START_LOAD_ABOVE] && !load)
+        report(list, PF_START_LOAD_ABOVE, "start_load_above is given without a start load",
+               "start_load_current, start_load_resistance or start_load_power beside it");
+}
+
 static void check_retry(findings *list, const pf_profile *profile)
 {
     bool counted = profile->stated[PF_RETRY_COUNT] || profile->endless_retry;
@@ -168,6 +177,7 @@ pf_status pf_profile_finish(pf_profile *profile, pf_profile_finding *found, void
                "trip_current is given without trip_time");
     check_pair(&list, profile, PF_TRIP_TIME, PF_TRIP_CURRENT,
                "trip_time is given without trip_current");
+    check_start_load(&list, profile);
     check_retry(&list, profile);
     check_voltages(&list, profile);
     check_whole_numbers(&list, profile);

@@ -73,6 +73,25 @@ static void test_every_nasty_profile_becomes_what_the_table_says(void **state)
     assert_int_equal(wrong, 0);
 }
 
+static void test_a_setting_that_the_control_does_not_use_is_warned_of(void **state)
+{
+    static const char text[] =
+        "parameter,min,typ,max,unit,note\nsupply_voltage,,12,,V,\npolarity,,N,,,\n"
+        "output_capacitance,,100 uF,,,\nstart_control,,current_limit,,,\ncurrent_limit,,10,,A,\n"
+        "running_current,,8,,A,\nfault_time,,1 ms,,,\nambient_temperature,,25,,,\n"
+        "gate_drive,,10,,,\npower_limit,,60,,W,\n";
+    pf_problems problems;
+    pf_profile profile;
+    (void)state;
+    pf_problems_init(&problems);
+    assert_int_equal(pf_profile_read("p.csv", text, strlen(text), NULL, &profile, &problems),
+                     PF_OK);
+    assert_int_equal(problems.warnings, 1);
+    assert_int_equal(problems.item[0].line, 11);
+    assert_string_equal(problems.item[0].column, "power_limit");
+    pf_problems_clear(&problems);
+}
+
 /* --- Derating rules ------------------------------------------------------------------------- */
 
 static const char rules_text[] = "rule,parameter,factor,clause,mark\n"
@@ -222,6 +241,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_every_nasty_profile_becomes_what_the_table_says),
+        cmocka_unit_test(test_a_setting_that_the_control_does_not_use_is_warned_of),
         cmocka_unit_test(test_a_profile_takes_its_derating_rule_by_name),
         cmocka_unit_test(test_a_later_rule_file_takes_the_place_of_an_earlier_rule),
         cmocka_unit_test(test_rules_that_mean_nothing_are_refused_with_their_lines),

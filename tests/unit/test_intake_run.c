@@ -332,6 +332,15 @@ static void test_a_file_that_cannot_be_read_is_named(void **state)
         pf_ratings_read_file("/tmp", NULL, &now->changes, &now->summary, &now->problems), PF_FILE);
 }
 
+static void test_a_status_is_kept_in_one_word(void **state)
+{
+    run *now = *state;
+    assert_int_equal(take(now, "p.csv",
+                          "part,polarity,vds_max,tj_max,status\nA,N,100,175,Not for new designs\n"),
+                     PF_OK);
+    assert_string_equal(change_of(now, "A")->part.status, "not-for-new");
+}
+
 static void test_options_that_mean_nothing_are_a_bad_argument(void **state)
 {
     run *now = *state;
@@ -390,6 +399,7 @@ int main(void)
         CLAIM(test_what_concerns_the_whole_file_refuses_it_even_so),
         CLAIM(test_a_column_map_gives_our_names_to_theirs),
         CLAIM(test_a_file_that_cannot_be_read_is_named),
+        CLAIM(test_a_status_is_kept_in_one_word),
         CLAIM(test_options_that_mean_nothing_are_a_bad_argument),
         CLAIM(test_a_misspelt_column_is_suggested),
         CLAIM(test_every_problem_of_a_file_is_told_and_no_more_than_the_limit),
