@@ -13,6 +13,10 @@ add_executable(table_dump support/table_dump.c)
 target_link_libraries(table_dump PRIVATE pf_intake)
 find_package(Python3 COMPONENTS Interpreter)
 if(Python3_FOUND)
+  add_test(NAME import_unchanged
+    COMMAND ${Python3_EXECUTABLE} ${CMAKE_CURRENT_SOURCE_DIR}/cli/import_unchanged.py
+      $<TARGET_FILE:passfet> ${CMAKE_CURRENT_SOURCE_DIR}/unit/nasty_files.tsv
+      ${CMAKE_CURRENT_SOURCE_DIR}/unit/clean_parts.csv)
   add_test(NAME csv_compare
     COMMAND ${Python3_EXECUTABLE} ${CMAKE_CURRENT_SOURCE_DIR}/unit/csv_compare.py $<TARGET_FILE:table_dump>)
 endif()
