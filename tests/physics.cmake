@@ -36,3 +36,4 @@ pf_test(test_reference SOURCES reference/test_reference.c reference/quantities.c
   LIBRARIES ${PHYSICS} ARGUMENTS ${RECORDS})
 add_custom_target(reference_page
   COMMAND test_reference --write ${PROJECT_SOURCE_DIR}/docs/testing_worst.md ${RECORDS})
+pf_test(test_properties SOURCES reference/test_properties.c LIBRARIES ${PHYSICS})
