@@ -86,7 +86,7 @@ typedef struct pf_event_view {
     double value[PF_PARAMETER_COUNT]; /* at the worst corner; NaN where it does not depend on it */
     double hot_rise_K;                /* dT_hot at that corner */
     double derating;                  /* (T_allow - T_start)/span of the family used */
-    /* rectangles: short_at_start, short_running, trip, retry */
+    /* rectangles: short_at_start, short_running, trip, retry; turn_off: V_in and its current */
     double vds_V, id_A, time_s;
     pf_reading soa;
     double limit_A;

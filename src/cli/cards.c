@@ -15,14 +15,7 @@ pf_status pf_rules_load(const pf_arguments *arguments, pf_derating_rules *rules,
     return pf_derating_rules_read_file(own, rules, problems);
 }
 
-/* All captures of the command line. */
-typedef struct captures {
-    pf_capture_data data[PF_OPTIONS_MAX];
-    pf_capture view[PF_OPTIONS_MAX];
-    size_t count;
-} captures;
-
-static void captures_clear(captures *list)
+static void captures_clear(pf_captures *list)
 {
     for (size_t i = 0; i < list->count; i++)
         pf_capture_data_clear(&list->data[i]);
@@ -34,7 +27,8 @@ static void keep_first(pf_status *first, pf_status status)
     if (*first == PF_OK) *first = status;
 }
 
-static pf_status captures_read(captures *list, const pf_arguments *arguments, pf_problems *problems)
+static pf_status captures_read(pf_captures *list, const pf_arguments *arguments,
+                               pf_problems *problems)
 {
     pf_status first = PF_OK;
     for (size_t i = 0; i < arguments->given_count; i++) {
@@ -49,9 +43,9 @@ static pf_status captures_read(captures *list, const pf_arguments *arguments, pf
     return first;
 }
 
-static pf_status add_card(pf_cards *cards, const pf_profile *profile, const captures *recorded,
-                          pf_error *error)
+static pf_status add_card(pf_cards *cards, const pf_profile *profile, pf_error *error)
 {
+    const pf_captures *recorded = &cards->recorded;
     bool from_memory =
         profile->derating.name[0] && strcmp(profile->derating.mark, "published") != 0;
     if (from_memory) cards->remarks |= PF_REMARK_MEMORY_RULE;
@@ -65,16 +59,14 @@ static pf_status read_all(pf_cards *cards, const pf_arguments *arguments, char *
                           size_t count, pf_problems *problems, pf_error *error)
 {
     pf_derating_rules rules = {0};
-    captures recorded = {0};
     pf_status first = pf_rules_load(arguments, &rules, problems);
-    keep_first(&first, captures_read(&recorded, arguments, problems));
+    keep_first(&first, captures_read(&cards->recorded, arguments, problems));
     for (size_t i = 0; i < count; i++) {
         pf_profile profile;
         pf_status status = pf_profile_read_file(path[i], &rules, &profile, problems);
         keep_first(&first, status);
-        if (first == PF_OK) keep_first(&first, add_card(cards, &profile, &recorded, error));
+        if (first == PF_OK) keep_first(&first, add_card(cards, &profile, error));
     }
-    captures_clear(&recorded);
     pf_derating_rules_clear(&rules);
     return first;
 }
@@ -101,5 +93,6 @@ void pf_cards_clear(pf_cards *cards)
     for (size_t i = 0; i < cards->count; i++)
         pf_plan_free(cards->plan[i]);
     pf_free(cards->plan);
+    captures_clear(&cards->recorded);
     *cards = (pf_cards){0};
 }

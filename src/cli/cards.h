@@ -7,10 +7,18 @@
 #include <passfet/intake.h>
 #include <passfet/stress.h>
 
+/* All captures of the command line. */
+typedef struct pf_captures {
+    pf_capture_data data[PF_OPTIONS_MAX];
+    pf_capture view[PF_OPTIONS_MAX];
+    size_t count;
+} pf_captures;
+
 /* Plans of profiles with the captures of the command line. */
 typedef struct pf_cards {
     pf_plan **plan;
     size_t count;
+    pf_captures recorded;
     unsigned remarks; /* for every part: the rule of some profile is quoted from memory */
 } pf_cards;
 

@@ -13,6 +13,8 @@ static const pf_command commands[] = {
      1, 10000, pf_command_import},
     {"rank", "PROFILE...", "Evaluates every part for the card of a profile and ranks them.",
      pf_rank_options, 1, 64, pf_command_rank},
+    {"explain", "PART PROFILE", "The whole calculation for one part, to be checked by hand.",
+     pf_explain_options, 2, 2, pf_command_explain},
     {NULL, NULL, NULL, NULL, 0, 0, NULL},
 };
 

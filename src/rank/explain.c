@@ -21,8 +21,8 @@ typedef struct context {
 /* What an event's curves are read with. */
 static pf_subject subject_of(const context *on, const pf_outcome *outcome)
 {
-    return pf_subject_of(on->scratch->model, outcome->start_degC, on->plan->profile.extend_soa,
-                         NULL, NULL);
+    return pf_reading_subject(on->scratch->model, outcome->start_degC,
+                              on->plan->profile.extend_soa);
 }
 
 /* V, I and t of a rectangle at a corner. */
@@ -134,6 +134,15 @@ static pf_status view_waves(const context *on, size_t index, const pf_outcome *o
     return PF_OK;
 }
 
+static void view_turn_off(const context *on, const pf_slot *slot, const pf_outcome *outcome,
+                          pf_event_view *view)
+{
+    pf_corner at;
+    pf_corner_at(&slot->corners, &on->plan->profile, outcome->corner, &at);
+    view->vds_V = at.value[PF_SUPPLY_VOLTAGE];
+    view->id_A = fmax(pf_corner_fault_A(&on->plan->profile, &at), at.value[PF_TRIP_CURRENT]);
+}
+
 static pf_status view_event(const context *on, size_t index, pf_event_view *view)
 {
     const pf_slot *slot = &on->plan->slot[index];
@@ -145,6 +154,7 @@ static pf_status view_event(const context *on, size_t index, pf_event_view *view
     if (!pf_is_stated(outcome->start_degC) || slot->event == PF_RUNNING) return PF_OK;
     switch (slot->event) {
     case PF_TURN_OFF:
+        view_turn_off(on, slot, outcome, view);
         return PF_OK;
     case PF_START_UP:
     case PF_SUPPLY_STEP:

@@ -9,6 +9,16 @@
 
 #include <math.h>
 
+pf_subject pf_reading_subject(const pf_model *model, double start_degC, bool extend)
+{
+    pf_subject subject = {.model = model, .extend = extend, .zth = pf_model_zth(model)};
+    subject.family = pf_model_family(model, start_degC);
+    if (!subject.family) return subject;
+    double longest = pf_soa_longest_log(subject.family);
+    subject.log_zth_longest = log(pf_zth_at(subject.zth, exp(longest), longest));
+    return subject;
+}
+
 /* The points on either side of a voltage on one line, and the current that the column has there. */
 static pf_line_reading read_line(const pf_soa_curve *curve, double log_vds, double log_i)
 {

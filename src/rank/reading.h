@@ -6,6 +6,9 @@
 
 #include <passfet/explain.h>
 
+/* What readings from one start temperature share; it has no room for waveforms. */
+pf_subject pf_reading_subject(const pf_model *model, double start_degC, bool extend);
+
 /* I_SOA(V, t) as an event that starts where the subject does reads it. */
 void pf_reading_take(const pf_subject *subject, double vds_V, double time_s, pf_reading *reading);
 

@@ -52,7 +52,6 @@ static pf_status take_waves(pf_variant *variant, size_t at, const pf_slot *from,
                             pf_parameter parameter)
 {
     pf_slot *slot = &variant->plan.slot[at];
-    slot->waves = from->waves;
     bool open = from->waves.count == 0;
     if (open || !waves_depend(from, parameter)) return PF_OK;
     slot->waves = (pf_waves){0};
@@ -65,18 +64,16 @@ pf_status pf_variant_init(pf_variant *variant, const pf_plan *base, const pf_pro
 {
     pf_status status = PF_OK;
     pf_plan *plan = &variant->plan;
+    *plan = *base; /* its waves stay the base's until they are made again */
     plan->profile = *changed;
     plan->count = plan->samples = 0;
-    plan->all_rows = base->all_rows;
-    plan->stall[0] = 0;
     memset(variant->owns, 0, sizeof variant->owns);
     for (size_t i = 0; i < base->count && status == PF_OK; i++) {
         if (!concerned[i]) continue;
         size_t at = plan->count++;
         pf_slot *slot = &plan->slot[at];
         variant->base[at] = i;
-        slot->event = base->slot[i].event;
-        memcpy(slot->name, base->slot[i].name, sizeof slot->name);
+        *slot = base->slot[i];
         pf_corners_init(&slot->corners, changed, slot->event);
         status = take_waves(variant, at, &base->slot[i], parameter);
         if (slot->waves.samples > plan->samples) plan->samples = slot->waves.samples;

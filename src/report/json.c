@@ -122,3 +122,10 @@ void pf_json_named_number(pf_json *json, const char *name, double value)
     pf_json_name(json, name);
     pf_json_number(json, value);
 }
+
+void pf_json_named_bool(pf_json *json, const char *name, bool value)
+{
+    pf_json_name(json, name);
+    separate(json);
+    fputs(value ? "true" : "false", json->out);
+}

@@ -29,5 +29,6 @@ void pf_json_number(pf_json *json, double value);
 /* A name with its value. */
 void pf_json_named_text(pf_json *json, const char *name, const char *text);
 void pf_json_named_number(pf_json *json, const char *name, double value);
+void pf_json_named_bool(pf_json *json, const char *name, bool value);
 
 #endif

@@ -1,5 +1,6 @@
 /* ranking_json.c: a ranking as JSON. One profile gives `profile` and flat parts; several give
 ** `profiles`, and each part a list `cards` with the same keys per profile. */
+#include "report/ranking_json.h"
 #include "report/json.h"
 #include "report/words.h"
 
@@ -77,8 +78,7 @@ static void write_reasons(pf_json *json, const pf_plan *plan, const pf_assessmen
     pf_json_close(json, ']');
 }
 
-/* The keys that a part has for one profile. */
-static void write_assessment(pf_json *json, const pf_plan *plan, const pf_assessment *on)
+void pf_json_assessment(pf_json *json, const pf_plan *plan, const pf_assessment *on)
 {
     const pf_stress *stress = &on->stress;
     const char *limiting = pf_limiting_event(plan, on);
@@ -111,7 +111,7 @@ static void write_cards(pf_json *json, const pf_ranking *ranking, const pf_row *
     for (size_t i = 0; i < ranking->profile_count; i++) {
         pf_json_open(json, '{');
         pf_json_named_text(json, "card", pf_plan_profile(ranking->plan[i])->name);
-        write_assessment(json, ranking->plan[i], &row->assessment[i]);
+        pf_json_assessment(json, ranking->plan[i], &row->assessment[i]);
         pf_json_close(json, '}');
     }
     pf_json_close(json, ']');
@@ -126,7 +126,7 @@ static void write_part(pf_json *json, const pf_ranking *ranking, size_t place)
     pf_json_named_text(json, "maker", row->maker);
     pf_json_named_text(json, "package", row->package);
     if (ranking->profile_count == 1)
-        write_assessment(json, ranking->plan[0], &row->assessment[0]);
+        pf_json_assessment(json, ranking->plan[0], &row->assessment[0]);
     else
         write_cards(json, ranking, row);
     pf_json_close(json, '}');
