@@ -60,6 +60,10 @@ typedef struct pf_assessment {
 pf_status pf_assess(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                     pf_assessment *assessment);
 
+/* The same for up to PF_BATCH parts at once. */
+pf_status pf_assess_batch(const pf_plan *plan, const pf_part *const *part, size_t count,
+                          pf_scratch *scratch, pf_assessment *const *assessment);
+
 /* One check as a sentence: "start_up: SOA margin 0.84, required 1.3", "unassessed: …". Writes at
 *most
 ** room bytes, NUL included; returns the whole length as snprintf does. */
@@ -109,16 +113,28 @@ typedef struct pf_ranking {
     const pf_plan *const *plan; /* borrowed, profile_count of them */
     pf_row *row;
     size_t count, capacity;
-    size_t tally[3]; /* by pf_verdict */
+    size_t tally[3]; /* of all parts added, by pf_verdict */
 } pf_ranking;
 
 /* plan: an array of profile_count plans that outlives the ranking. */
 void pf_ranking_init(pf_ranking *ranking, const pf_plan *const *plan, size_t profile_count);
 void pf_ranking_clear(pf_ranking *ranking);
 
-/* Evaluates a part under every plan and adds its row. remarks are added to the part's own. */
+/* Evaluates parts, up to PF_BATCH of them, under every plan and adds their rows. remarks[i] are added
+** to those of part i; NULL: none. PF_NO_MEMORY leaves the ranking as it was. */
+pf_status pf_ranking_add_batch(pf_ranking *ranking, const pf_part *const *part,
+                               const unsigned *remarks, size_t count,
+                               pf_scratch *scratch) PF_MUST_USE;
+
+/* The same for one part. */
 pf_status pf_ranking_add(pf_ranking *ranking, const pf_part *part, unsigned remarks,
                          pf_scratch *scratch) PF_MUST_USE;
+
+/* Moves all rows of another ranking over the same plans to this one, and leaves that empty. */
+pf_status pf_ranking_take(pf_ranking *ranking, pf_ranking *other) PF_MUST_USE;
+
+/* Keeps only the first top rows of a sorted ranking; the tally still counts all. */
+void pf_ranking_cut(pf_ranking *ranking, size_t top);
 
 /* Orders the rows: pass, unassessed, fail; within each by the keys in turn, then by the default
 *keys

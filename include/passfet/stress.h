@@ -70,14 +70,20 @@ const char *pf_cause_text(pf_cause cause);
 
 /* What a reader must know beside a result: assumptions, contradictions, extensions. Bits. */
 #define PF_REMARK_LIST(X)                                                                          \
-    X(PF_REMARK_HOT_RATIO, 0, "Rds(on) at T_j,max is not stated: 2.0 times the value at 25 degC is assumed") \
+    X(PF_REMARK_HOT_RATIO, 0,                                                                      \
+      "Rds(on) at T_j,max is not stated: 2.0 times the value at 25 degC is assumed")               \
     X(PF_REMARK_AMBIENT_ZTH, 1, "Zth is junction to ambient, on the board of the data sheet")      \
-    X(PF_REMARK_EXTENDED, 2, "SOA extended beyond its longest line by Zth and by the slope of its lines") \
+    X(PF_REMARK_EXTENDED, 2,                                                                       \
+      "SOA extended beyond its longest line by Zth and by the slope of its lines")                 \
     X(PF_REMARK_DC_BOUND, 3, "beyond the longest SOA line the DC line and Zth bound the current")  \
-    X(PF_REMARK_CONTRADICTION, 4, "SOA allows clearly more than Zth does: the two curves contradict each other") \
-    X(PF_REMARK_HOT_FAMILY, 5, "SOA measured at a hot case is used instead of the linear derating") \
-    X(PF_REMARK_CASE_FROM_RTH, 6, "retry: case warming taken from R_thJA, the profile states no case_to_ambient") \
-    X(PF_REMARK_AVALANCHE_CURRENT, 7, "turn-off current is above the current at which E_AS was rated") \
+    X(PF_REMARK_CONTRADICTION, 4,                                                                  \
+      "SOA allows clearly more than Zth does: the two curves contradict each other")               \
+    X(PF_REMARK_HOT_FAMILY, 5,                                                                     \
+      "SOA measured at a hot case is used instead of the linear derating")                         \
+    X(PF_REMARK_CASE_FROM_RTH, 6,                                                                  \
+      "retry: case warming taken from R_thJA, the profile states no case_to_ambient")              \
+    X(PF_REMARK_AVALANCHE_CURRENT, 7,                                                              \
+      "turn-off current is above the current at which E_AS was rated")                             \
     X(PF_REMARK_NO_CRSS, 8, "gate ramp: C_rss is not stated, the slow corner is without it")       \
     X(PF_REMARK_UNREVIEWED, 9, "ratings not yet reviewed by a second person")                      \
     X(PF_REMARK_MEMORY_RULE, 10, "derating rule quoted from memory")
@@ -150,7 +156,8 @@ const char *pf_plan_event_name(const pf_plan *plan, size_t slot);
 
 /* The value (magnitude) that a parameter takes at a corner of a slot's event; NaN where the event
 ** does not depend on it. */
-double pf_plan_corner_value(const pf_plan *plan, size_t slot, unsigned corner, pf_parameter parameter);
+double pf_plan_corner_value(const pf_plan *plan, size_t slot, unsigned corner,
+                            pf_parameter parameter);
 
 /* How many corners a slot has. */
 unsigned pf_plan_corners(const pf_plan *plan, size_t slot);
@@ -163,5 +170,14 @@ void pf_scratch_free(pf_scratch *scratch);
 ** Sources: Carslaw & Jaeger 1959 (Duhamel's integral); the rest as numbered in docs/methods.md. */
 pf_status pf_plan_evaluate(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                            pf_stress *stress);
+
+/* The same for up to PF_BATCH parts at once, which costs less than one by one and gives the same. */
+#define PF_BATCH 8
+pf_status pf_plan_evaluate_batch(const pf_plan *plan, const pf_part *const *part, size_t count,
+                                 pf_scratch *scratch, pf_stress *const *stress);
+
+/* Looks at every corner and moment of every part instead of leaving out those that can be proved
+** never to be the worst (docs/methods.md, section 2). The results are the same; a check. */
+void pf_plan_look_at_all(pf_plan *plan);
 
 #endif

@@ -1,11 +1,12 @@
 /* command_rank.c: passfet rank PROFILE… */
-#include "base/memory.h"
 #include "cli/cards.h"
 #include "cli/commands.h"
+#include "cli/market.h"
 
 #include <passfet/ranking.h>
 #include <passfet/report.h>
 #include <string.h>
+#include <unistd.h>
 
 const pf_option pf_rank_options[] = {
     {"sort", "KEY[,KEY...]",
@@ -16,6 +17,8 @@ const pf_option pf_rank_options[] = {
     {"derating", "FILE", "derating rules of your own, before the built-in ones"},
     {"as-of", "DATE", "with the ratings known at that date or UTC time"},
     {"reviewed", NULL, "only ratings that a second person accepted"},
+    {"threads", "N", "evaluate on N threads; else on all processors"},
+    {"all-corners", NULL, "look at every corner, also those proved never to be the worst"},
     {"format", "FORMAT", "table (the default), csv or json"},
     {"help", NULL, "this text"},
     {NULL, NULL, NULL},
@@ -27,7 +30,8 @@ typedef struct request {
     size_t condition_count;
     pf_sort_key key[PF_SORT_COUNT];
     size_t key_count;
-    size_t top;
+    size_t top, threads;
+    bool all_corners;
     void (*write)(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
     pf_query query;
 } request;
@@ -74,62 +78,23 @@ static int read_format(const pf_cli *cli, const char *format, request *on)
 
 static int read_request(const pf_cli *cli, const pf_arguments *arguments, request *on)
 {
-    const char *top = pf_argument(arguments, "top");
+    const char *top = pf_argument(arguments, "top"), *threads = pf_argument(arguments, "threads");
     *on = (request){.query = {.as_of = pf_argument(arguments, "as-of"),
                               .reviewed_only = pf_argument(arguments, "reviewed") != NULL,
-                              .as_stored = true}};
+                              .as_stored = true},
+                    .threads = pf_processors(),
+                    .all_corners = pf_argument(arguments, "all-corners") != NULL};
     int exit_status = read_keys(cli, pf_argument(arguments, "sort"), on);
     if (exit_status == PF_EXIT_DONE) exit_status = read_conditions(cli, arguments, on);
     if (exit_status == PF_EXIT_DONE)
         exit_status = read_format(cli, pf_argument(arguments, "format"), on);
     if (exit_status == PF_EXIT_DONE && top && !pf_count_read(cli, "top", top, 1, &on->top))
         exit_status = PF_EXIT_USAGE;
+    if (exit_status == PF_EXIT_DONE && threads &&
+        !pf_count_read(cli, "threads", threads, 1, &on->threads))
+        exit_status = PF_EXIT_USAGE;
+    if (on->threads > 256) on->threads = 256;
     return exit_status;
-}
-
-static bool is_wanted(const request *on, const pf_part *part)
-{
-    for (size_t i = 0; i < on->condition_count; i++)
-        if (!pf_condition_met(&on->condition[i], part)) return false;
-    return true;
-}
-
-static pf_status add_parts(pf_cursor *cursor, const request *on, unsigned remarks,
-                           pf_ranking *ranking, pf_error *error)
-{
-    pf_stored_part stored;
-    bool more = true;
-    pf_scratch *scratch = pf_scratch_new();
-    pf_status status = scratch ? PF_OK : PF_NO_MEMORY;
-    pf_stored_part_init(&stored);
-    while (status == PF_OK) {
-        status = pf_cursor_next(cursor, &stored, &more, error);
-        if (status != PF_OK || !more) break;
-        if (!is_wanted(on, &stored.part)) continue;
-        bool unreviewed = stored.facts.review != PF_ACCEPTED;
-        status = pf_ranking_add(ranking, &stored.part,
-                                remarks | (unreviewed ? PF_REMARK_UNREVIEWED : 0), scratch);
-    }
-    pf_stored_part_clear(&stored);
-    pf_scratch_free(scratch);
-    return status;
-}
-
-static pf_status evaluate(pf_store *store, const request *on, unsigned remarks, pf_ranking *ranking,
-                          char *revision, pf_error *error)
-{
-    pf_cursor *cursor = NULL;
-    pf_status status = pf_store_read_begin(store, error);
-    if (status != PF_OK) return status;
-    status = pf_store_revision_name(store, on->query.as_of, revision, error);
-    if (status == PF_OK) status = pf_cursor_open(store, &on->query, &cursor, error);
-    if (status == PF_OK) {
-        status = add_parts(cursor, on, remarks, ranking, error);
-        pf_cursor_close(cursor);
-    }
-    pf_store_read_end(store);
-    if (status == PF_OK) status = pf_ranking_sort(ranking, on->key, on->key_count);
-    return status;
 }
 
 static bool any_stall(const pf_cards *cards)
@@ -144,8 +109,18 @@ static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_
     char revision[PF_REVISION_NAME_ROOM];
     pf_error error = {0};
     pf_ranking ranking;
+    const pf_market market = {.database = cli->database,
+                              .query = on->query,
+                              .condition = on->condition,
+                              .condition_count = on->condition_count,
+                              .key = on->key,
+                              .key_count = on->key_count,
+                              .top = on->top,
+                              .remarks = cards->remarks,
+                              .threads = on->threads,
+                              .progress = isatty(fileno(cli->err)) ? cli->err : NULL};
     pf_ranking_init(&ranking, (const pf_plan *const *)cards->plan, cards->count);
-    pf_status status = evaluate(store, on, cards->remarks, &ranking, revision, &error);
+    pf_status status = pf_market_rank(&market, store, &ranking, revision, &error);
     int exit_status = status == PF_OK ? PF_EXIT_DONE : pf_fail(cli, status, &error);
     if (status == PF_OK) {
         const pf_report_source source = {cli->database, revision, on->top};
@@ -167,6 +142,8 @@ int pf_command_rank(const pf_cli *cli, const pf_arguments *arguments)
         exit_status =
             pf_cards_read(cli, arguments, arguments->operand, arguments->operand_count, &cards);
     if (exit_status != PF_EXIT_DONE) return exit_status;
+    for (size_t i = 0; on.all_corners && i < cards.count; i++)
+        pf_plan_look_at_all(cards.plan[i]);
     pf_status status = pf_cli_open(cli, PF_STORE_READ, &store, &error);
     exit_status = status == PF_OK ? rank(cli, store, &on, &cards) : pf_fail(cli, status, &error);
     pf_store_close(store);

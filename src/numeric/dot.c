@@ -13,26 +13,26 @@
 
 enum { LANES = 8 };
 
-static inline double sum_lanes(const double lane[LANES])
-{
-    return ((lane[0] + lane[4]) + (lane[2] + lane[6])) +
-           ((lane[1] + lane[5]) + (lane[3] + lane[7]));
-}
-
+/* Four sums a lane, so that an addition need not wait for the one before it. */
 PF_WIDE
-double pf_dot_rows(const double *left, const double *right, size_t rows, size_t stride,
-                   size_t reach)
+void pf_dot_terms(const uint16_t *place, const double *flow, size_t terms, const double *step,
+                  double answer[LANES])
 {
-    double lane[LANES] = {0}, rest = 0;
-    size_t whole = reach - reach % LANES;
-    for (size_t i = 0; i < rows; i++, left += stride, right += stride) {
-        for (size_t j = 0; j < whole; j += LANES)
-            for (size_t k = 0; k < LANES; k++)
-                lane[k] += left[j + k] * right[j + k];
-        for (size_t j = whole; j < reach; j++)
-            rest += left[j] * right[j];
+    double sum[4][LANES] = {{0}};
+    size_t t = 0;
+    for (; t + 4 <= terms; t += 4)
+        for (size_t k = 0; k < 4; k++) {
+            const double *at = step + (size_t)place[t + k] * LANES;
+            for (size_t lane = 0; lane < LANES; lane++)
+                sum[k][lane] += flow[t + k] * at[lane];
+        }
+    for (; t < terms; t++) {
+        const double *at = step + (size_t)place[t] * LANES;
+        for (size_t lane = 0; lane < LANES; lane++)
+            sum[0][lane] += flow[t] * at[lane];
     }
-    return sum_lanes(lane) + rest;
+    for (size_t lane = 0; lane < LANES; lane++)
+        answer[lane] = (sum[0][lane] + sum[1][lane]) + (sum[2][lane] + sum[3][lane]);
 }
 
 /* exp(-x) = 2^n exp(r) with |r| <= ln 2 / 2: Cody and Waite's reduction in two parts, the Taylor

@@ -10,10 +10,11 @@
 #define NUMERIC_DOT_H
 
 #include <stddef.h>
+#include <stdint.h>
 
-/* Sum over rows i and columns j < reach of left[i*stride + j] * right[i*stride + j]. */
-double pf_dot_rows(const double *left, const double *right, size_t rows, size_t stride,
-                   size_t reach);
+/* answer[lane] = sum over t < terms of flow[t] * step[place[t] * 8 + lane], in eight lanes. */
+void pf_dot_terms(const uint16_t *place, const double *flow, size_t terms, const double *step,
+                  double answer[8]);
 
 /* Replaces every value by factor * exp(-value), within 4e-16 relative where the result is a normal
 ** number; values beyond +-700 are taken as +-700; NaN stays NaN. */

@@ -5,25 +5,16 @@
 **
 **     R(m) = f(m) K(v(m), 0+) + integral over s of f(m - s) dK(v(m - s), s)
 **
-** With K linear between the nodes (v_i, s_j) of a grid this is exactly a weighted sum of the
-*samples
-** K_ij, a row of weights per waveform and moment. The weights depend on the waveforms alone: they
-*are
-** worked out once, and every K then costs one dot product per row.
+** With K linear between the nodes (v_i, s_j) of a grid this is exactly the sum of A_ij (K_ij - K_i,j-1),
+** A_ij being the mean flow at level i while the lag was between s_j-1 and s_j (A_i0: the flow at the
+** moment itself). The A depend on the waveforms alone, a row per waveform and moment: they are worked
+** out once, and every K then costs its samples and one short dot product per row, since a waveform
+** passes few levels in one interval of lag. All waveforms of one kernel share the grid.
 **
-** The lags grow as squares, s_j = T (j/J)^2: an impedance that rises with the square root of time
-*is
-** then equally well resolved everywhere. Moments lie twice as dense. All waveforms of one kernel
-*share
-** the grid, so that K is sampled once for all of them.
-**
-** Rows that can never be the largest are set aside. Let Q_ab be the sum of a row's weights over all
-** nodes at or above level a and lag b. If K and all its first and mixed differences over the grid
-*are
-** not negative (pf_kernel_is_regular), then by summation by parts R = sum of Q_ab D_ab with D >= 0;
-*a
-** row whose every Q_ab is at most that of another row is never above it. docs/methods.md has the
-*proof.
+** Rows that can never be the largest are set aside. Let B_aj be the sum of A_ij over i >= a. If the
+** steps K_ij - K_i,j-1 are not negative and do not fall with the level (pf_steps_put), then by
+** summation by parts R is the sum of B_aj D_aj with D >= 0; a row whose every B_aj is at most that of
+** another row is never above it. docs/methods.md has the proof.
 */
 #ifndef NUMERIC_KERNEL_H
 #define NUMERIC_KERNEL_H
@@ -31,6 +22,7 @@
 #include <passfet/error.h>
 #include <stdbool.h>
 #include <stddef.h>
+#include <stdint.h>
 
 /* A waveform by its corners: time rising from 0 (equal neighbours make a jump), straight lines
 ** between. Level and flow are not negative. */
@@ -40,38 +32,39 @@ typedef struct pf_trace {
     const double *time, *level, *flow;
 } pf_trace;
 
+/* One moment of one waveform: its mean flows that are not 0, by rising place. */
 typedef struct pf_kernel_row {
     size_t trace; /* its id */
     double moment;
-    double *weight; /* first the levels from the lowest, each lags long */
-    size_t reach;   /* weights behind the first reach lags of every level are 0 */
+    size_t first, terms; /* in place and flow of the rows */
 } pf_kernel_row;
 
 /* Rows of one kind: for K with levels, or for an impedance of the lag alone (one level). */
 typedef struct pf_kernel_rows {
     pf_kernel_row *row;
-    size_t count;
-    size_t kept; /* the first kept rows are enough for a regular K */
-    double *weights;
+    size_t count, room;
+    size_t kept;     /* the first kept rows are enough for a regular K */
+    uint16_t *place; /* level * lags + lag */
+    double *flow;
+    size_t terms, place_room, flow_room;
 } pf_kernel_rows;
 
 typedef struct pf_kernel {
     size_t lags;   /* lag[0] = 0 stands for 0+; the last is the longest duration */
     size_t levels; /* rising from 0 */
     double *lag, *log_lag, *level, *log_level;
-    pf_kernel_rows rows;  /* weights from the flow: [levels][lags] */
-    pf_kernel_rows total; /* weights from flow times level: [lags] */
-    bool *used;           /* [levels][lags]: whether any weight of rows is not 0 */
+    pf_kernel_rows rows;  /* of the flow: [levels][lags] */
+    pf_kernel_rows total; /* of flow times level: [lags] */
+    bool *used;           /* [levels][lags]: whether some row reads the sample there */
 } pf_kernel;
 
-/* The grid. Levels are spaced evenly up to the highest of the traces. Moments looked at are the
-*lags
-** counted from the start, so many corners of each trace in even steps, its end among them, and the
-** extra ones of the caller, counted from the start. */
+/* The grid. Levels are spaced evenly up to the highest of the traces. Moments looked at are the lags
+** counted from the start, the end, every jump, the times at which the level first falls to so many even
+** parts of the highest, and the extra ones of the caller, counted from the start. */
 typedef struct pf_kernel_size {
     const double *lag;   /* strictly rising from 0 to the longest duration */
-    size_t lags, levels; /* each >= 2 */
-    size_t corners;      /* >= 1 */
+    size_t lags, levels; /* each >= 2; the product at most 65536 */
+    size_t falls;
     const double *extra;
     size_t extra_count;
 } pf_kernel_size;
@@ -81,17 +74,20 @@ pf_status pf_kernel_init(pf_kernel *kernel, const pf_trace *trace, size_t count,
                          pf_kernel_size size) PF_MUST_USE;
 void pf_kernel_clear(pf_kernel *kernel);
 
-/* Sorts rows that can be left out for a regular K behind the others. PF_NO_MEMORY leaves all kept.
- */
+/* Sorts rows that can be left out for a regular K behind the others. PF_NO_MEMORY leaves all kept. */
 pf_status pf_kernel_prune(pf_kernel *kernel) PF_MUST_USE;
 
-/* Whether sample [levels][lags] and all its differences over the grid are not negative, to within
-** rounding. */
-bool pf_kernel_is_regular(const double *sample, size_t levels, size_t lags);
+/* Several K are looked at together: a row is read once for all of them. */
+enum { PF_LANES = 8 };
 
-/* The row with the largest answer, over the first count rows; NULL for count 0. *highest is that
-** answer. sample: finite; its value where no row has a weight does not matter. */
-const pf_kernel_row *pf_kernel_peak(const pf_kernel *kernel, const pf_kernel_rows *rows,
-                                    size_t count, const double *sample, double *highest);
+/* Puts the steps of samples [levels][lags] into a lane of step [place][PF_LANES]. Returns whether they
+** are regular: then the rows set aside need not be looked at. */
+bool pf_steps_put(const double *sample, size_t levels, size_t lags, double *step, size_t lane);
+
+/* The largest answer of the rows from .. to - 1 for each of PF_LANES K, and its row: *highest and *row
+** begin with what was found before (-infinity for nothing). step: [place][PF_LANES],
+** finite; its value where no row reads it does not matter. */
+void pf_rows_peak(const pf_kernel_rows *rows, size_t from, size_t to, const double *step,
+                  double highest[PF_LANES], size_t row[PF_LANES]);
 
 #endif

@@ -123,21 +123,36 @@ static void check_event(pf_assessment *to, const pf_plan *plan, const pf_part *p
               rated ? NULL : "id_pulse", outcome->cause);
 }
 
+/* All checks of an evaluated part, and the verdict: the worst of theirs. */
+static void judge(pf_assessment *on, const pf_plan *plan, const pf_part *part)
+{
+    on->check_count = 0;
+    check_identity(on, pf_plan_profile(plan), part);
+    check_ratings(on, pf_plan_profile(plan), part);
+    for (size_t slot = 0; slot < pf_plan_slots(plan); slot++)
+        check_event(on, plan, part, (int)slot);
+    on->verdict = PF_PASS;
+    for (size_t i = 0; i < on->check_count; i++)
+        if (on->check[i].verdict > on->verdict) on->verdict = on->check[i].verdict;
+}
+
+pf_status pf_assess_batch(const pf_plan *plan, const pf_part *const *part, size_t count,
+                          pf_scratch *scratch, pf_assessment *const *assessment)
+{
+    pf_stress *stress[PF_BATCH] = {NULL};
+    if (count > PF_BATCH) return PF_BAD_ARGUMENT;
+    for (size_t i = 0; i < count; i++)
+        stress[i] = &assessment[i]->stress;
+    pf_status status = pf_plan_evaluate_batch(plan, part, count, scratch, stress);
+    for (size_t i = 0; i < count && status == PF_OK; i++)
+        judge(assessment[i], plan, part[i]);
+    return status;
+}
+
 pf_status pf_assess(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                     pf_assessment *assessment)
 {
-    assessment->check_count = 0;
-    pf_status status = pf_plan_evaluate(plan, part, scratch, &assessment->stress);
-    if (status != PF_OK) return status;
-    check_identity(assessment, pf_plan_profile(plan), part);
-    check_ratings(assessment, pf_plan_profile(plan), part);
-    for (size_t slot = 0; slot < pf_plan_slots(plan); slot++)
-        check_event(assessment, plan, part, (int)slot);
-    assessment->verdict = PF_PASS;
-    for (size_t i = 0; i < assessment->check_count; i++)
-        if (assessment->check[i].verdict > assessment->verdict)
-            assessment->verdict = assessment->check[i].verdict;
-    return PF_OK;
+    return pf_assess_batch(plan, &part, 1, scratch, &assessment);
 }
 
 /* What a check that was made says. */

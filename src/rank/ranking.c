@@ -97,25 +97,71 @@ static pf_status fill(pf_row *row, const pf_part *part, size_t profile_count)
     return row->assessment ? status : PF_NO_MEMORY;
 }
 
+/* Evaluates a batch whose rows are already filled with names. */
+static pf_status assess_rows(pf_ranking *ranking, pf_row *row, const pf_part *const *part,
+                             const unsigned *remarks, size_t count, pf_scratch *scratch)
+{
+    pf_assessment *on[PF_BATCH];
+    pf_status status = PF_OK;
+    for (size_t p = 0; p < ranking->profile_count && status == PF_OK; p++) {
+        for (size_t i = 0; i < count; i++)
+            on[i] = &row[i].assessment[p];
+        status = pf_assess_batch(ranking->plan[p], part, count, scratch, on);
+        for (size_t i = 0; remarks && i < count; i++)
+            on[i]->stress.remarks |= remarks[i];
+    }
+    return status;
+}
+
+pf_status pf_ranking_add_batch(pf_ranking *ranking, const pf_part *const *part,
+                               const unsigned *remarks, size_t count, pf_scratch *scratch)
+{
+    if (count > PF_BATCH) return PF_BAD_ARGUMENT;
+    pf_status status = pf_grow((void **)&ranking->row, &ranking->capacity, ranking->count + count,
+                               sizeof *ranking->row);
+    if (status != PF_OK) return status;
+    pf_row *row = &ranking->row[ranking->count];
+    memset(row, 0, count * sizeof *row);
+    for (size_t i = 0; i < count && status == PF_OK; i++)
+        status = fill(&row[i], part[i], ranking->profile_count);
+    if (status == PF_OK) status = assess_rows(ranking, row, part, remarks, count, scratch);
+    for (size_t i = 0; i < count; i++) {
+        if (status != PF_OK) {
+            row_clear(&row[i]);
+            continue;
+        }
+        summarise(&row[i], ranking->profile_count);
+        ranking->tally[row[i].verdict]++;
+        ranking->count++;
+    }
+    return status;
+}
+
 pf_status pf_ranking_add(pf_ranking *ranking, const pf_part *part, unsigned remarks,
                          pf_scratch *scratch)
 {
-    pf_row row = {0};
-    pf_status status = pf_grow((void **)&ranking->row, &ranking->capacity, ranking->count + 1,
-                               sizeof *ranking->row);
-    if (status == PF_OK) status = fill(&row, part, ranking->profile_count);
-    for (size_t i = 0; status == PF_OK && i < ranking->profile_count; i++) {
-        status = pf_assess(ranking->plan[i], part, scratch, &row.assessment[i]);
-        row.assessment[i].stress.remarks |= remarks;
-    }
-    if (status != PF_OK) {
-        row_clear(&row);
-        return status;
-    }
-    summarise(&row, ranking->profile_count);
-    ranking->tally[row.verdict]++;
-    ranking->row[ranking->count++] = row;
+    return pf_ranking_add_batch(ranking, &part, &remarks, 1, scratch);
+}
+
+pf_status pf_ranking_take(pf_ranking *ranking, pf_ranking *other)
+{
+    pf_status status = pf_grow((void **)&ranking->row, &ranking->capacity,
+                               ranking->count + other->count, sizeof *ranking->row);
+    if (status != PF_OK) return status;
+    if (other->count)
+        memcpy(&ranking->row[ranking->count], other->row, other->count * sizeof *other->row);
+    ranking->count += other->count;
+    for (int i = 0; i < 3; i++)
+        ranking->tally[i] += other->tally[i];
+    other->count = 0;
+    pf_ranking_clear(other);
     return PF_OK;
+}
+
+void pf_ranking_cut(pf_ranking *ranking, size_t top)
+{
+    while (ranking->count > top)
+        row_clear(&ranking->row[--ranking->count]);
 }
 
 /* A row with its keys: smaller comes first, verdict before all. */

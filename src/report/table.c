@@ -91,12 +91,12 @@ static void print_card(FILE *out, const pf_plan *plan)
 
 static void print_counts(FILE *out, const pf_ranking *ranking, const pf_report_source *source)
 {
-    fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", ranking->count,
+    size_t all = ranking->tally[PF_PASS] + ranking->tally[PF_UNASSESSED] + ranking->tally[PF_FAIL];
+    fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", all,
             ranking->tally[PF_PASS], ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
     if (source->revision)
         fprintf(out, " Ratings: %s, revision %s.", source->database, source->revision);
-    if (source->top && source->top < ranking->count)
-        fprintf(out, " The first %zu are shown.", source->top);
+    if (source->top && source->top < all) fprintf(out, " The first %zu are shown.", source->top);
     fputs("\n\n", out);
 }
 

@@ -16,6 +16,7 @@ typedef struct evaluation {
     const pf_plan *plan;
     const pf_part *part;
     pf_scratch *scratch;
+    pf_model *model;
     pf_stress *stress;
     pf_steady_state running;
 } evaluation;
@@ -26,6 +27,7 @@ typedef struct trial {
     const pf_slot *slot;
     pf_outcome *outcome;
     pf_subject subject;
+    bool begun;            /* there is something to try */
     bool junction_unknown; /* at some corner */
 } trial;
 
@@ -176,34 +178,49 @@ static void try_turn_off(trial *test, unsigned corner, const pf_corner *at)
     if (id_A > part->avalanche_current_A) on->stress->remarks |= PF_REMARK_AVALANCHE_CURRENT;
 }
 
-static void take_waves(trial *test, const pf_waves *waves)
+/* The responses of up to PF_LANES trials of one slot to its waves. */
+static void take_waves(trial *const *test, size_t count, const pf_waves *waves,
+                       const pf_bench *bench)
 {
-    pf_response response;
-    pf_respond_waves(&test->subject, waves, &response);
-    take(test, response.corner, &response, &waves->wave[response.corner]);
+    pf_response response[PF_LANES];
+    const pf_subject *subject[PF_LANES];
+    for (size_t i = 0; i < count; i++)
+        subject[i] = &test[i]->subject;
+    pf_respond_waves(subject, count, waves, bench, response);
+    for (size_t i = 0; i < count; i++)
+        take(test[i], response[i].corner, &response[i], &waves->wave[response[i].corner]);
 }
 
-/* Starts of which the part's own C_rss slows the gate ramp: the one waveform that knows the part.
- */
+/* Starts of which the part's own C_rss slows the gate ramp: the one waveform that knows the part. */
 static pf_status try_slowed_starts(trial *test)
 {
     const evaluation *on = test->on;
     pf_waves waves;
     pf_status status = pf_plan_starts(&on->plan->profile, test->slot, on->part->crss_F, &waves);
     if (status != PF_OK) return status;
-    status = pf_scratch_reserve(on->scratch, waves.samples);
-    test->subject.sample = on->scratch->sample;
-    if (status == PF_OK) take_waves(test, &waves);
+    status = pf_bench_reserve(&on->scratch->bench, waves.samples);
+    if (status == PF_OK) take_waves(&test, 1, &waves, &on->scratch->bench);
     pf_waves_clear(&waves);
     return status;
 }
 
-static pf_status try_waves(trial *test)
+/* All trials of one slot that has waves; those with a gate ramp of their own one by one. */
+static pf_status try_waves(trial *test, size_t count, pf_scratch *scratch)
 {
-    bool ramp = test->slot->corners.gate_bit >= 0;
-    if (ramp && pf_is_stated(test->on->part->crss_F)) return try_slowed_starts(test);
-    if (ramp) test->on->stress->remarks |= PF_REMARK_NO_CRSS;
-    take_waves(test, &test->slot->waves);
+    trial *shared[PF_LANES];
+    size_t lanes = 0;
+    for (size_t i = 0; i < count; i++) {
+        bool ramp = test[i].slot->corners.gate_bit >= 0;
+        if (!test[i].begun) continue;
+        if (ramp && pf_is_stated(test[i].on->part->crss_F)) {
+            pf_status status = try_slowed_starts(&test[i]);
+            if (status != PF_OK) return status;
+            continue;
+        }
+        if (ramp) test[i].on->stress->remarks |= PF_REMARK_NO_CRSS;
+        shared[lanes++] = &test[i];
+    }
+    if (lanes) take_waves(shared, lanes, &test[0].slot->waves, &scratch->bench);
     return PF_OK;
 }
 
@@ -234,14 +251,6 @@ static void try_corner(trial *test, unsigned corner)
 static bool has_waves(pf_event event)
 {
     return event == PF_START_UP || event == PF_SUPPLY_STEP || event == PF_RECORDED;
-}
-
-static pf_status try_all(trial *test)
-{
-    if (has_waves(test->slot->event)) return try_waves(test);
-    for (unsigned i = 0; i < test->slot->corners.number; i++)
-        try_corner(test, i);
-    return PF_OK;
 }
 
 /* What the corners said together. */
@@ -285,24 +294,43 @@ static pf_cause why_not(const evaluation *on, const pf_slot *slot, double start_
     return PF_CAUSE_NONE;
 }
 
-static pf_status evaluate_slot(const evaluation *on, size_t index)
+/* Sets a trial up; begun says whether there is something to try. */
+static void begin(trial *test, const evaluation *on, size_t index)
 {
     const pf_slot *slot = &on->plan->slot[index];
     pf_outcome *outcome = &on->stress->outcome[index];
-    trial test = {.on = on, .slot = slot, .outcome = outcome};
+    *test = (trial){.on = on, .slot = slot, .outcome = outcome};
     *outcome = nothing_known;
     if (slot->event == PF_RUNNING) {
         outcome_of_running(on, outcome);
-        return PF_OK;
+        return;
     }
     outcome->peak_current_A = peak_current(&on->plan->profile, slot);
     outcome->start_degC = start_of(on, slot->event);
     outcome->cause = outcome->junction_cause = why_not(on, slot, outcome->start_degC);
-    if (outcome->cause != PF_CAUSE_NONE) return PF_OK;
-    test.subject = pf_subject_of(on->scratch->model, outcome->start_degC,
-                                 on->plan->profile.extend_soa, on->scratch->sample);
-    pf_status status = try_all(&test);
-    if (slot->event != PF_TURN_OFF) conclude(&test);
+    if (outcome->cause != PF_CAUSE_NONE) return;
+    test->subject = pf_subject_of(on->model, outcome->start_degC, on->plan->profile.extend_soa);
+    test->subject.all_rows = on->plan->all_rows;
+    test->begun = true;
+}
+
+/* One slot of the plan on all parts of a batch. */
+static pf_status evaluate_slot(const evaluation *on, size_t count, size_t index,
+                               pf_scratch *scratch)
+{
+    trial test[PF_LANES];
+    const pf_slot *slot = &on[0].plan->slot[index];
+    pf_status status = PF_OK;
+    for (size_t i = 0; i < count; i++)
+        begin(&test[i], &on[i], index);
+    if (has_waves(slot->event)) status = try_waves(test, count, scratch);
+    for (size_t i = 0; i < count; i++) {
+        if (!test[i].begun) continue;
+        for (unsigned corner = 0; !has_waves(slot->event) && corner < slot->corners.number;
+             corner++)
+            try_corner(&test[i], corner);
+        if (slot->event != PF_TURN_OFF) conclude(&test[i]);
+    }
     return status;
 }
 
@@ -324,7 +352,6 @@ static void summarise(const pf_plan *plan, pf_stress *stress)
 static pf_status prepare(evaluation *on)
 {
     pf_stress *stress = on->stress;
-    pf_scratch *scratch = on->scratch;
     on->running = pf_steady_state_of(&on->plan->profile, on->part);
     *stress = (pf_stress){.count = on->plan->count};
     stress->allowed_degC = pf_allowed_degC(&on->plan->profile, on->part);
@@ -334,48 +361,52 @@ static pf_status prepare(evaluation *on)
     stress->rdson_cold_ohm = on->running.rdson.cold_ohm;
     stress->rdson_drive_V = on->running.rdson.drive_V;
     if (on->running.rdson.ratio_assumed) stress->remarks |= PF_REMARK_HOT_RATIO;
-    pf_status status = pf_scratch_reserve(scratch, on->plan->samples);
-    if (status == PF_OK) status = pf_model_load(scratch->model, on->part);
-    if (status == PF_OK && pf_model_zth(scratch->model)->path == PF_JUNCTION_AMBIENT)
+    pf_status status = pf_model_load(on->model, on->part);
+    if (status == PF_OK && pf_model_zth(on->model)->path == PF_JUNCTION_AMBIENT)
         stress->remarks |= PF_REMARK_AMBIENT_ZTH;
+    return status;
+}
+
+pf_status pf_plan_evaluate_batch(const pf_plan *plan, const pf_part *const *part, size_t count,
+                                 pf_scratch *scratch, pf_stress *const *stress)
+{
+    evaluation on[PF_LANES];
+    pf_status status = pf_bench_reserve(&scratch->bench, plan->samples);
+    for (size_t i = 0; i < count && status == PF_OK; i++) {
+        on[i] = (evaluation){.plan = plan,
+                             .part = part[i],
+                             .scratch = scratch,
+                             .stress = stress[i],
+                             .model = &scratch->model[i]};
+        status = prepare(&on[i]);
+    }
+    for (size_t i = 0; i < plan->count && status == PF_OK; i++)
+        status = evaluate_slot(on, count, i, scratch);
+    for (size_t i = 0; i < count && status == PF_OK; i++)
+        summarise(plan, stress[i]);
     return status;
 }
 
 pf_status pf_plan_evaluate(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                            pf_stress *stress)
 {
-    evaluation on = {.plan = plan, .part = part, .scratch = scratch, .stress = stress};
-    pf_status status = prepare(&on);
-    for (size_t i = 0; i < plan->count && status == PF_OK; i++)
-        status = evaluate_slot(&on, i);
-    summarise(plan, stress);
-    return status;
-}
-
-pf_status pf_scratch_reserve(pf_scratch *scratch, size_t samples)
-{
-    return pf_grow((void **)&scratch->sample, &scratch->samples_room, samples + 1,
-                   sizeof *scratch->sample);
+    return pf_plan_evaluate_batch(plan, &part, 1, scratch, &stress);
 }
 
 pf_scratch *pf_scratch_new(void)
 {
     pf_scratch *scratch = pf_allocate(1, sizeof *scratch);
     if (!scratch) return NULL;
-    scratch->model = pf_allocate(1, sizeof *scratch->model);
-    if (!scratch->model) {
-        pf_free(scratch);
-        return NULL;
-    }
-    pf_model_init(scratch->model);
+    for (size_t i = 0; i < PF_LANES; i++)
+        pf_model_init(&scratch->model[i]);
     return scratch;
 }
 
 void pf_scratch_free(pf_scratch *scratch)
 {
     if (!scratch) return;
-    pf_model_clear(scratch->model);
-    pf_free(scratch->model);
-    pf_free(scratch->sample);
+    for (size_t i = 0; i < PF_LANES; i++)
+        pf_model_clear(&scratch->model[i]);
+    pf_bench_clear(&scratch->bench);
     pf_free(scratch);
 }

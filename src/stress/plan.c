@@ -209,6 +209,11 @@ void pf_plan_free(pf_plan *plan)
     pf_free(plan);
 }
 
+void pf_plan_look_at_all(pf_plan *plan)
+{
+    plan->all_rows = true;
+}
+
 const pf_profile *pf_plan_profile(const pf_plan *plan)
 {
     return &plan->profile;

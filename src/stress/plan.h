@@ -3,6 +3,7 @@
 #define STRESS_PLAN_H
 
 #include "stress/corners.h"
+#include "stress/response.h"
 #include "stress/wave.h"
 
 #include <passfet/stress.h>
@@ -20,17 +21,14 @@ struct pf_plan {
     pf_slot slot[PF_SLOTS_MAX];
     size_t samples; /* the most that any waves need */
     double slowest_s, fastest_s;
+    bool all_rows;    /* look at every corner and moment, leave none out */
     char stall[1024]; /* "" when the card starts */
 };
 
 struct pf_scratch {
-    struct pf_model *model;
-    double *sample;
-    size_t samples_room;
+    pf_model model[PF_LANES];
+    pf_bench bench;
 };
-
-/* Room for the samples of some waves. */
-pf_status pf_scratch_reserve(pf_scratch *scratch, size_t samples);
 
 /* The waves of a start_up or supply_step slot; crss_F as in pf_start_at. They are only pruned where
 ** they are to be used for many parts, crss_F not stated. */

@@ -1,5 +1,6 @@
 /* response.c: superposition of one stress on one part. */
 #include "stress/response.h"
+#include "base/memory.h"
 #include "base/number.h"
 #include "numeric/dot.h"
 
@@ -10,9 +11,9 @@
  ** some 10 % on either; common practice, no source. */
 #define CLEARLY_BELOW 0.8
 
-pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend, double *sample)
+pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend)
 {
-    pf_subject subject = {.model = model, .extend = extend, .sample = sample};
+    pf_subject subject = {.model = model, .extend = extend};
     subject.zth = pf_model_zth(model);
     subject.family = pf_model_family(model, start_degC);
     if (subject.family) {
@@ -70,13 +71,12 @@ static bool soa_is_there(const pf_subject *subject, pf_response *response)
     return response->cause == PF_CAUSE_NONE;
 }
 
-/* One level of a kernel's grid as ln I_SOA. False with the cause where a sample that is needed is
-** missing; *whole becomes false where one that is not needed is. */
+/* One level of a kernel's grid as ln I_SOA. False with the cause where a sample that some row reads is
+** missing; one that none reads is made like its neighbour. */
 static bool sample_level(const pf_subject *subject, const pf_kernel *kernel, size_t level,
-                         const instant *at, bool *whole, pf_response *response)
+                         const instant *at, double *sample, pf_response *response)
 {
     pf_soa_column column;
-    double *sample = subject->sample + level * kernel->lags;
     const bool *used = kernel->used + level * kernel->lags;
     pf_soa_column_at(subject->family, kernel->log_level[level], &column);
     for (size_t j = 0; j < kernel->lags; j++) {
@@ -86,8 +86,7 @@ static bool sample_level(const pf_subject *subject, const pf_kernel *kernel, siz
             response->cause = why_silent(subject, &column, at[j]);
             return false;
         }
-        *whole = false;
-        sample[j] = 0;
+        sample[j] = j ? sample[j - 1] : 0;
     }
     return true;
 }
@@ -107,16 +106,15 @@ static void find_instants(const pf_subject *subject, const pf_kernel *kernel, in
 }
 
 /* Fills the samples span/I_SOA of a kernel's grid. False with the cause where one is missing. */
-static bool sample_soa(const pf_subject *subject, const pf_kernel *kernel, bool *regular,
+static bool sample_soa(const pf_subject *subject, const pf_kernel *kernel, double *sample,
                        pf_response *response)
 {
     instant at[PF_LAGS_MAX];
-    bool whole = true;
     find_instants(subject, kernel, at, &response->remarks);
     for (size_t i = 0; i < kernel->levels; i++)
-        if (!sample_level(subject, kernel, i, at, &whole, response)) return false;
-    pf_exp_negative(subject->sample, kernel->levels * kernel->lags, subject->family->span_K);
-    *regular = whole && pf_kernel_is_regular(subject->sample, kernel->levels, kernel->lags);
+        if (!sample_level(subject, kernel, i, at, sample + i * kernel->lags, response))
+            return false;
+    pf_exp_negative(sample, kernel->levels * kernel->lags, subject->family->span_K);
     return true;
 }
 
@@ -137,13 +135,14 @@ static double kink_share(const pf_kernel *kernel, const double *sample, double p
 }
 
 /* The largest share over all levels: added to the rise, so that the error goes to the safe side. */
-static double kink_allowance(const pf_subject *subject, const pf_kernel *kernel, double moment)
+static double kink_allowance(const pf_subject *subject, const pf_kernel *kernel,
+                             const double *samples, double moment)
 {
     const pf_soa_family *family = subject->family;
     pf_soa_column column;
     double allowance = 0;
     for (size_t i = 1; i < kernel->levels; i++) {
-        const double *sample = subject->sample + i * kernel->lags;
+        const double *sample = samples + i * kernel->lags;
         pf_soa_column_at(family, kernel->log_level[i], &column);
         for (size_t k = 0; k < family->pulses; k++) {
             double value = family->span_K * exp(-column.log_i[k]);
@@ -168,45 +167,114 @@ static bool pulses_are_lags(const pf_subject *subject, const pf_kernel *kernel)
     return true;
 }
 
-static void respond_soa(const pf_subject *subject, const pf_kernel *kernel, pf_response *response)
+/* The rows of one kind on all lanes: those that are enough, and all where some lane needs them. */
+static void find_peaks(const pf_kernel_rows *rows, bool all, const double *step,
+                       double highest[PF_LANES], size_t row[PF_LANES])
 {
-    bool regular;
-    double rise = PF_NONE;
-    if (response->cause != PF_CAUSE_NONE) return;
-    if (!sample_soa(subject, kernel, &regular, response)) {
-        response->hot_rise_K = response->worst_s = PF_NONE;
-        return;
+    for (size_t lane = 0; lane < PF_LANES; lane++) {
+        highest[lane] = -INFINITY;
+        row[lane] = 0;
     }
-    size_t rows = regular ? kernel->rows.kept : kernel->rows.count;
-    const pf_kernel_row *row = pf_kernel_peak(kernel, &kernel->rows, rows, subject->sample, &rise);
-    if (!pulses_are_lags(subject, kernel)) rise *= 1 + kink_allowance(subject, kernel, row->moment);
+    pf_rows_peak(rows, 0, all ? rows->count : rows->kept, step, highest, row);
+}
+
+static void clear_lane(double *step, size_t places, size_t lane)
+{
+    for (size_t i = 0; i < places; i++)
+        step[i * PF_LANES + lane] = 0;
+}
+
+/* Takes the peak of one lane into its response, unless another kernel's was higher. */
+static void take_peak(const pf_subject *subject, const pf_kernel *kernel, const double *sample,
+                      double rise, size_t row, pf_response *response)
+{
+    const pf_kernel_row *at = &kernel->rows.row[row];
+    if (!pulses_are_lags(subject, kernel))
+        rise *= 1 + kink_allowance(subject, kernel, sample, at->moment);
     if (rise <= response->hot_rise_K) return;
     response->hot_rise_K = rise;
-    response->worst_s = row->moment;
-    response->corner = (unsigned)row->trace;
+    response->worst_s = at->moment;
+    response->corner = (unsigned)at->trace;
 }
 
-static double junction_rise(const pf_subject *subject, const pf_kernel *kernel)
+static void respond_soa(const pf_subject *const *subject, size_t count, const pf_kernel *kernel,
+                        const pf_bench *bench, pf_response *response)
 {
-    double rise = PF_NONE;
-    if (!pf_zth_stated(subject->zth)) return PF_NONE;
-    for (size_t j = 0; j < kernel->lags; j++)
-        subject->sample[j] = pf_zth_at(subject->zth, kernel->lag[j], kernel->log_lag[j]);
-    bool regular = pf_kernel_is_regular(subject->sample, 1, kernel->lags);
-    size_t rows = regular ? kernel->total.kept : kernel->total.count;
-    pf_kernel_peak(kernel, &kernel->total, rows, subject->sample, &rise);
-    return rise;
-}
-
-void pf_respond_waves(const pf_subject *subject, const pf_waves *waves, pf_response *response)
-{
-    soa_is_there(subject, response);
-    if (waves->unbounded) response->cause = PF_CAUSE_UNBOUNDED_CURRENT;
-    for (size_t i = 0; i < waves->kernels; i++) {
-        double junction = junction_rise(subject, &waves->kernel[i]);
-        response->junction_rise_K = fmax(response->junction_rise_K, junction);
-        respond_soa(subject, &waves->kernel[i], response);
+    double highest[PF_LANES];
+    size_t row[PF_LANES], places = kernel->levels * kernel->lags;
+    bool all = false, any = false;
+    for (size_t lane = 0; lane < PF_LANES; lane++) {
+        double *sample = bench->sample + lane * bench->places;
+        if (lane < count && response[lane].cause == PF_CAUSE_NONE &&
+            sample_soa(subject[lane], kernel, sample, &response[lane])) {
+            any = true;
+            if (!pf_steps_put(sample, kernel->levels, kernel->lags, bench->step, lane) ||
+                subject[lane]->all_rows)
+                all = true;
+        } else {
+            clear_lane(bench->step, places, lane);
+        }
     }
+    if (!any) return;
+    find_peaks(&kernel->rows, all, bench->step, highest, row);
+    for (size_t lane = 0; lane < count; lane++)
+        if (response[lane].cause == PF_CAUSE_NONE)
+            take_peak(subject[lane], kernel, bench->sample + lane * bench->places, highest[lane],
+                      row[lane], &response[lane]);
+}
+
+static void respond_zth(const pf_subject *const *subject, size_t count, const pf_kernel *kernel,
+                        const pf_bench *bench, pf_response *response)
+{
+    double highest[PF_LANES], *sample = bench->sample;
+    size_t row[PF_LANES];
+    bool all = false;
+    for (size_t lane = 0; lane < PF_LANES; lane++) {
+        clear_lane(bench->step, kernel->lags, lane);
+        if (lane >= count || !pf_zth_stated(subject[lane]->zth)) continue;
+        for (size_t j = 0; j < kernel->lags; j++)
+            sample[j] = pf_zth_at(subject[lane]->zth, kernel->lag[j], kernel->log_lag[j]);
+        if (!pf_steps_put(sample, 1, kernel->lags, bench->step, lane) || subject[lane]->all_rows)
+            all = true;
+    }
+    find_peaks(&kernel->total, all, bench->step, highest, row);
+    for (size_t lane = 0; lane < count; lane++)
+        if (pf_zth_stated(subject[lane]->zth))
+            response[lane].junction_rise_K = fmax(response[lane].junction_rise_K, highest[lane]);
+}
+
+void pf_respond_waves(const pf_subject *const *subject, size_t count, const pf_waves *waves,
+                      const pf_bench *bench, pf_response *response)
+{
+    for (size_t lane = 0; lane < count; lane++) {
+        soa_is_there(subject[lane], &response[lane]);
+        if (waves->unbounded) response[lane].cause = PF_CAUSE_UNBOUNDED_CURRENT;
+    }
+    for (size_t i = 0; i < waves->kernels; i++) {
+        respond_zth(subject, count, &waves->kernel[i], bench, response);
+        respond_soa(subject, count, &waves->kernel[i], bench, response);
+    }
+    for (size_t lane = 0; lane < count; lane++)
+        if (response[lane].cause != PF_CAUSE_NONE)
+            response[lane].hot_rise_K = response[lane].worst_s = PF_NONE;
+}
+
+pf_status pf_bench_reserve(pf_bench *bench, size_t places)
+{
+    pf_status status = pf_grow((void **)&bench->sample, &bench->sample_room, PF_LANES * places + 1,
+                               sizeof *bench->sample);
+    if (status == PF_OK)
+        status = pf_grow((void **)&bench->step, &bench->step_room, PF_LANES * places + 1,
+                         sizeof *bench->step);
+    if (status == PF_OK && places > bench->places) bench->places = places;
+    return status;
+}
+
+void pf_bench_clear(pf_bench *bench)
+{
+    pf_free(bench->sample);
+    pf_free(bench->step);
+    *bench = (pf_bench){0};
 }
 
 /* The smallest current allowed for a pulse and every shorter one; when that is. */

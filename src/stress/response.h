@@ -19,7 +19,7 @@ typedef struct pf_subject {
     const pf_soa_family *family; /* NULL: no SOA */
     double log_zth_longest;      /* ln Zth at the family's longest finite pulse */
     bool extend;                 /* beyond_soa, extend */
-    double *sample;              /* scratch: at least the samples of any waves */
+    bool all_rows;               /* leave no row of a kernel out */
 } pf_subject;
 
 typedef struct pf_response {
@@ -31,10 +31,24 @@ typedef struct pf_response {
     unsigned remarks;
 } pf_response;
 
-pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend, double *sample);
+pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend);
 
-/* Waveforms with their kernels: the largest rises over all corners. */
-void pf_respond_waves(const pf_subject *subject, const pf_waves *waves, pf_response *response);
+/* Scratch for the samples of waves. */
+typedef struct pf_bench {
+    double *sample; /* [lane][place] */
+    double *step;   /* [place][lane] */
+    size_t places;
+    size_t sample_room, step_room;
+} pf_bench;
+
+/* Room for kernels of that many places. PF_NO_MEMORY. */
+pf_status pf_bench_reserve(pf_bench *bench, size_t places) PF_MUST_USE;
+void pf_bench_clear(pf_bench *bench);
+
+/* Waveforms with their kernels, on up to PF_LANES subjects at once: the largest rises over all
+** corners. */
+void pf_respond_waves(const pf_subject *const *subject, size_t count, const pf_waves *waves,
+                      const pf_bench *bench, pf_response *response);
 
 /* A rectangle of vds_V and id_A for time_s: exactly the hand calculation. A longer pulse contains
  *the

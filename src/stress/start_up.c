@@ -5,9 +5,6 @@
 
 #include <math.h>
 
-/* Cells between V_out = from and V_in, not counting those that kinks add. */
-#define CELLS 256
-
 /* Abscissae and weights of three-point Gauss-Legendre quadrature on [-1, 1]. */
 static const double gauss_x[] = {-0.774596669241483377, 0, 0.774596669241483377};
 static const double gauss_w[] = {5.0 / 9, 8.0 / 9, 5.0 / 9};
@@ -49,10 +46,10 @@ void pf_waveform_clear(pf_waveform *wave)
     *wave = (pf_waveform){0};
 }
 
-/* One block holds the three arrays: CELLS cells of two points, those of two kinks, and a hold. */
+/* One block holds the three arrays: PF_START_CELLS cells of two points, those of two kinks, and a hold. */
 static pf_status waveform_init(pf_waveform *wave)
 {
-    *wave = (pf_waveform){.capacity = 2 * (CELLS + 8)};
+    *wave = (pf_waveform){.capacity = 2 * (PF_START_CELLS + 8)};
     wave->time_s = pf_allocate(3 * wave->capacity, sizeof(double));
     if (!wave->time_s) return PF_NO_MEMORY;
     wave->vds_V = wave->time_s + wave->capacity;
@@ -162,18 +159,20 @@ static double next_stop(const pf_start *start, double out_V, double limit_V)
     return limit_V;
 }
 
+/* Cells end where V_DS is a multiple of the step, so that starts from different supplies share their
+** cells from where they meet. */
 pf_status pf_start_waveform(const pf_start *start, double hold_s, pf_waveform *wave)
 {
     pf_status status = waveform_init(wave);
     if (status != PF_OK) return status;
-    double out_V = start->from_V;
-    for (int cell = 1; cell <= CELLS; cell++) {
-        double end = start->from_V + (start->supply_V - start->from_V) * cell / CELLS;
-        if (cell == CELLS) end = start->supply_V;
-        while (out_V < end) {
-            double stop = next_stop(start, out_V, end);
-            if (!walk_cell(start, wave, out_V, stop, hold_s)) return PF_OK;
-            out_V = stop;
+    double out_V = start->from_V, range_V = start->supply_V - start->from_V;
+    double step_V = fmax(start->step_V, range_V / PF_START_CELLS);
+    for (double cell = ceil(range_V / step_V - 1e-9) - 1; cell >= 0; cell--) {
+        double end_V = cell > 0 ? start->supply_V - cell * step_V : start->supply_V;
+        while (out_V < end_V) {
+            double stop_V = next_stop(start, out_V, end_V);
+            if (!walk_cell(start, wave, out_V, stop_V, hold_s)) return PF_OK;
+            out_V = stop_V;
         }
     }
     return PF_OK;

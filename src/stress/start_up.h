@@ -15,6 +15,9 @@
 #include <passfet/profile.h>
 #include <stdbool.h>
 
+/* Cells that a start is integrated in at the most, not counting those that kinks add. */
+#define PF_START_CELLS 256
+
 /* One corner of a start: every value a number, or as said. */
 typedef struct pf_start {
     pf_start_control control;
@@ -27,6 +30,7 @@ typedef struct pf_start {
     double load_ohm;        /* infinity: none */
     double load_W;          /* 0: none */
     double load_above_V;
+    double step_V; /* V_DS is stepped through multiples of this; 0: a part of its own range */
 } pf_start;
 
 /* V_DS and I_D over time: straight lines between the points, equal times make a jump. */

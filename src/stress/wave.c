@@ -16,7 +16,7 @@
  */
 #define STEPS 32
 
-static const pf_kernel_size start_size = {.levels = 17, .corners = 64};
+static const pf_kernel_size start_size = {.levels = 17, .falls = 64};
 
 /* Waveforms of one kernel: the longest at most this many times the shortest, which then still meets
 ** more than half of the lags. */
@@ -30,7 +30,7 @@ static const pf_kernel_size start_size = {.levels = 17, .corners = 64};
 #define CAPTURE_STEPS 100
 #define ANCHORS 128
 #define MOMENTS 512
-static const pf_kernel_size capture_size = {.levels = 33, .corners = 1};
+static const pf_kernel_size capture_size = {.levels = 33};
 
 /* Moves the lag nearest to a pulse width there, or adds one. */
 static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
@@ -137,7 +137,7 @@ static double longest_of(const pf_trace *trace, size_t count)
 }
 
 static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count,
-                            pf_kernel_size size, bool many)
+                            pf_kernel_size size, bool prune)
 {
     pf_kernel *kernel = &waves->kernel[waves->kernels];
     pf_status status = pf_kernel_init(kernel, trace, count, size);
@@ -145,7 +145,7 @@ static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count
     waves->kernels++;
     if (kernel->levels * kernel->lags > waves->samples)
         waves->samples = kernel->levels * kernel->lags;
-    return many ? pf_kernel_bound(kernel) : PF_OK;
+    return prune ? pf_kernel_prune(kernel) : PF_OK;
 }
 
 static int longest_first(const void *left, const void *right)
@@ -157,7 +157,7 @@ static int longest_first(const void *left, const void *right)
 }
 
 /* Makes kernels of waveforms whose durations lie within GROUP_SPAN of each other. */
-static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool many)
+static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool prune)
 {
     double lag[PF_LAGS_MAX];
     pf_kernel_size size = start_size;
@@ -170,7 +170,7 @@ static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool
                     form[i].form.duration_s * GROUP_SPAN < form[first].form.duration_s;
         if (ends && used > first) {
             size.lags = place_lags(lag, longest_of(trace + first, used - first), STEPS, 2);
-            status = add_kernel(waves, trace + first, used - first, size, many);
+            status = add_kernel(waves, trace + first, used - first, size, prune);
             first = used;
         }
         if (i == waves->count || form[i].form.unbounded) continue;
@@ -181,12 +181,23 @@ static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool
     return status;
 }
 
+/* The widest range of V_DS of all starts. */
+static double widest_V(const pf_start *start, size_t count)
+{
+    double widest = 0;
+    for (size_t i = 0; i < count; i++) widest = fmax(widest, start[i].supply_V - start[i].from_V);
+    return widest;
+}
+
 /* The waveforms themselves; everything but the kernels. */
 static pf_status integrate(pf_waves *waves, const pf_start *start, double hold_s, corner_form *form)
 {
+    double step_V = widest_V(start, waves->count) / PF_START_CELLS;
     for (size_t i = 0; i < waves->count; i++) {
         form[i].corner = i;
-        pf_status status = pf_start_waveform(&start[i], hold_s, &form[i].form);
+        pf_start stepped = start[i];
+        stepped.step_V = step_V;
+        pf_status status = pf_start_waveform(&stepped, hold_s, &form[i].form);
         if (status != PF_OK) return status;
         waves->wave[i] = scalars_of(&form[i].form);
         waves->unbounded |= form[i].form.unbounded;
@@ -204,14 +215,14 @@ static pf_status allocate(pf_waves *waves, size_t count)
 }
 
 pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s,
-                               bool many)
+                               bool prune)
 {
     pf_status status = allocate(waves, count);
     corner_form *form = pf_allocate(count, sizeof *form);
     pf_trace *trace = pf_allocate(count, sizeof *trace);
     if (!form || !trace) status = PF_NO_MEMORY;
     if (status == PF_OK) status = integrate(waves, start, hold_s, form);
-    if (status == PF_OK) status = group(waves, form, trace, many);
+    if (status == PF_OK) status = group(waves, form, trace, prune);
     for (size_t i = 0; form && i < count; i++)
         pf_waveform_clear(&form[i].form);
     pf_free(form);
