@@ -29,6 +29,21 @@ typedef struct pf_option {
 
 #define PF_OPTIONS_MAX 40
 
+/* Options that several commands take. PF_HELP_OPTION ends every list. */
+#define PF_BY_OPTION                                                                               \
+    {                                                                                              \
+        "by", "NAME", "who does it; else the login name"                                           \
+    }
+#define PF_WHY_OPTION                                                                              \
+    {                                                                                              \
+        "why", "TEXT", "why, for the history"                                                      \
+    }
+#define PF_HELP_OPTION                                                                             \
+    {"help", NULL, "this text"},                                                                   \
+    {                                                                                              \
+        NULL, NULL, NULL                                                                           \
+    }
+
 /* A command line, read. */
 typedef struct pf_arguments {
     struct {
@@ -81,12 +96,23 @@ void pf_problems_show(const pf_cli *cli, const pf_problems *problems);
 /* Opens the database; says on err what the user should know of where it lies. */
 pf_status pf_cli_open(const pf_cli *cli, pf_store_mode mode, pf_store **store, pf_error *error);
 
-/* A whole number >= least from text; false with a message for anything else. */
+/* A whole number >= least from text; false for anything else. */
+bool pf_count_of(const char *text, long least, size_t *value);
+
+/* The same for an option's value, with a message. */
 bool pf_count_read(const pf_cli *cli, const char *option, const char *text, long least,
                    size_t *value);
 
-/* Now, as ISO 8601 in UTC. */
 #define PF_TIME_ROOM 24
+
+/* One of a list of words that ends with NULL. Returns an exit status, *index its place. */
+int pf_choice_read(const pf_cli *cli, const char *option, const char *text,
+                   const char *const *choice, size_t *index);
+
+/* Author, time and --why of an act on the database. now: room for its time. */
+pf_import_facts pf_facts_of(const pf_arguments *arguments, char now[PF_TIME_ROOM]);
+
+/* Now, as ISO 8601 in UTC. */
 void pf_time_now(char text[PF_TIME_ROOM]);
 
 /* --by, else the login name; "unknown" where there is none. Borrowed. */

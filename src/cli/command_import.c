@@ -14,10 +14,9 @@ const pf_option pf_import_options[] = {
     {"accept", NULL, "take curves that contradict each other, with a warning"},
     {"keep-good", "FILE", "store good rows, write bad ones to FILE with the reasons"},
     {"dry-run", NULL, "store nothing; show for every cell what would be stored"},
-    {"by", "NAME", "who enters the ratings; else the login name"},
-    {"why", "TEXT", "why, for the history"},
-    {"help", NULL, "this text"},
-    {NULL, NULL, NULL},
+    PF_BY_OPTION,
+    PF_WHY_OPTION,
+    PF_HELP_OPTION,
 };
 
 static int read_options(const pf_cli *cli, const pf_arguments *arguments, pf_import_run *run)

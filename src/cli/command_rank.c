@@ -2,6 +2,7 @@
 #include "cli/cards.h"
 #include "cli/commands.h"
 #include "cli/market.h"
+#include "cli/selection.h"
 
 #include <passfet/ranking.h>
 #include <passfet/report.h>
@@ -12,28 +13,25 @@ const pf_option pf_rank_options[] = {
     {"sort", "KEY[,KEY...]",
      "order within a verdict: margin, loss, junction, running, price, part"},
     {"top", "N", "show the first N parts only"},
-    {"where", "CONDITION", "only parts that meet it: vds_max>=80, package=LFP8; repeatable"},
+    PF_WHERE_OPTION,
     {"capture", "FILE", "a measured waveform to evaluate as well; repeatable"},
     {"derating", "FILE", "derating rules of your own, before the built-in ones"},
-    {"as-of", "DATE", "with the ratings known at that date or UTC time"},
-    {"reviewed", NULL, "only ratings that a second person accepted"},
+    PF_AS_OF_OPTION,
+    PF_REVIEWED_OPTION,
     {"threads", "N", "evaluate on N threads; else on all processors"},
     {"all-corners", NULL, "look at every corner, also those proved never to be the worst"},
     {"format", "FORMAT", "table (the default), csv or json"},
-    {"help", NULL, "this text"},
-    {NULL, NULL, NULL},
+    PF_HELP_OPTION,
 };
 
 /* Everything that the options say. */
 typedef struct request {
-    pf_condition condition[PF_OPTIONS_MAX];
-    size_t condition_count;
+    pf_selection selection;
     pf_sort_key key[PF_SORT_COUNT];
     size_t key_count;
     size_t top, threads;
     bool all_corners;
     void (*write)(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
-    pf_query query;
 } request;
 
 static int read_keys(const pf_cli *cli, const char *text, request *on)
@@ -51,41 +49,25 @@ static int read_keys(const pf_cli *cli, const char *text, request *on)
     return PF_EXIT_DONE;
 }
 
-static int read_conditions(const pf_cli *cli, const pf_arguments *arguments, request *on)
+static int read_format(const pf_cli *cli, const char *text, request *on)
 {
-    pf_error error = {0};
-    for (size_t i = 0; i < arguments->given_count; i++) {
-        if (strcmp(arguments->given[i].name, "where") != 0) continue;
-        if (pf_condition_read(arguments->given[i].value, &on->condition[on->condition_count++],
-                              &error) != PF_OK)
-            return pf_usage(cli, "--where: %s", error.text);
-    }
-    return PF_EXIT_DONE;
-}
-
-static int read_format(const pf_cli *cli, const char *format, request *on)
-{
-    on->write = pf_report_table;
-    if (!format || strcmp(format, "table") == 0) return PF_EXIT_DONE;
-    if (strcmp(format, "csv") == 0)
-        on->write = pf_report_csv;
-    else if (strcmp(format, "json") == 0)
-        on->write = pf_report_json;
-    else
-        return pf_usage(cli, "--format takes table, csv or json, not `%s`", format);
-    return PF_EXIT_DONE;
+    static void (*const writer[])(FILE *, const pf_ranking *, const pf_report_source *) = {
+        pf_report_table, pf_report_csv, pf_report_json};
+    static const char *const format[] = {"table", "csv", "json", NULL};
+    size_t index = 0;
+    int exit_status = text ? pf_choice_read(cli, "format", text, format, &index) : PF_EXIT_DONE;
+    on->write = writer[index];
+    return exit_status;
 }
 
 static int read_request(const pf_cli *cli, const pf_arguments *arguments, request *on)
 {
     const char *top = pf_argument(arguments, "top"), *threads = pf_argument(arguments, "threads");
-    *on = (request){.query = {.as_of = pf_argument(arguments, "as-of"),
-                              .reviewed_only = pf_argument(arguments, "reviewed") != NULL,
-                              .as_stored = true},
-                    .threads = pf_processors(),
+    *on = (request){.threads = pf_processors(),
                     .all_corners = pf_argument(arguments, "all-corners") != NULL};
     int exit_status = read_keys(cli, pf_argument(arguments, "sort"), on);
-    if (exit_status == PF_EXIT_DONE) exit_status = read_conditions(cli, arguments, on);
+    if (exit_status == PF_EXIT_DONE)
+        exit_status = pf_selection_read(cli, arguments, &on->selection);
     if (exit_status == PF_EXIT_DONE)
         exit_status = read_format(cli, pf_argument(arguments, "format"), on);
     if (exit_status == PF_EXIT_DONE && top && !pf_count_read(cli, "top", top, 1, &on->top))
@@ -94,6 +76,7 @@ static int read_request(const pf_cli *cli, const pf_arguments *arguments, reques
         !pf_count_read(cli, "threads", threads, 1, &on->threads))
         exit_status = PF_EXIT_USAGE;
     if (on->threads > 256) on->threads = 256;
+    on->selection.query.as_stored = true; /* the order is the ranking's */
     return exit_status;
 }
 
@@ -110,9 +93,7 @@ static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_
     pf_error error = {0};
     pf_ranking ranking;
     const pf_market market = {.database = cli->database,
-                              .query = on->query,
-                              .condition = on->condition,
-                              .condition_count = on->condition_count,
+                              .selection = &on->selection,
                               .key = on->key,
                               .key_count = on->key_count,
                               .top = on->top,

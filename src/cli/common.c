@@ -69,17 +69,35 @@ pf_status pf_cli_open(const pf_cli *cli, pf_store_mode mode, pf_store **store, p
     return status;
 }
 
-bool pf_count_read(const pf_cli *cli, const char *option, const char *text, long least,
-                   size_t *value)
+bool pf_count_of(const char *text, long least, size_t *value)
 {
     char *end;
     long count = strtol(text, &end, 10);
-    if (*text >= '0' && *text <= '9' && !*end && count >= least && count < 1000000000L) {
-        *value = (size_t)count;
-        return true;
-    }
+    bool good = *text >= '0' && *text <= '9' && !*end && count >= least && count < 1000000000L;
+    if (good) *value = (size_t)count;
+    return good;
+}
+
+bool pf_count_read(const pf_cli *cli, const char *option, const char *text, long least,
+                   size_t *value)
+{
+    if (pf_count_of(text, least, value)) return true;
     pf_usage(cli, "--%s takes a whole number from %ld on, not `%s`", option, least, text);
     return false;
+}
+
+int pf_choice_read(const pf_cli *cli, const char *option, const char *text,
+                   const char *const *choice, size_t *index)
+{
+    char list[200] = "";
+    size_t at = 0;
+    for (*index = 0; choice[*index]; ++*index) {
+        if (strcmp(text, choice[*index]) == 0) return PF_EXIT_DONE;
+        const char *mark = !at ? "" : choice[*index + 1] ? ", " : " or ";
+        at += (size_t)snprintf(list + at, sizeof list - at, "%s%s", mark, choice[*index]);
+    }
+    *index = 0;
+    return pf_usage(cli, "--%s takes %s, not `%s`", option, list, text);
 }
 
 void pf_time_now(char text[PF_TIME_ROOM])
@@ -96,4 +114,11 @@ const char *pf_author(const pf_arguments *arguments)
     if (by && *by) return by;
     const struct passwd *entry = getpwuid(geteuid());
     return entry && entry->pw_name && *entry->pw_name ? entry->pw_name : "unknown";
+}
+
+pf_import_facts pf_facts_of(const pf_arguments *arguments, char now[PF_TIME_ROOM])
+{
+    pf_time_now(now);
+    return (pf_import_facts){
+        .author = pf_author(arguments), .time = now, .why = pf_argument(arguments, "why")};
 }

@@ -36,13 +36,6 @@ size_t pf_processors(void)
     return count > 0 ? (size_t)count : 1;
 }
 
-static bool is_wanted(const pf_market *market, const pf_part *part)
-{
-    for (size_t i = 0; i < market->condition_count; i++)
-        if (!pf_condition_met(&market->condition[i], part)) return false;
-    return true;
-}
-
 /* The next wanted parts; *count below PF_BATCH at the end. */
 static pf_status read_batch(worker *own, pf_cursor *cursor, size_t *count)
 {
@@ -52,7 +45,7 @@ static pf_status read_batch(worker *own, pf_cursor *cursor, size_t *count)
         pf_status status = pf_cursor_next(cursor, into, &more, &own->error);
         if (status != PF_OK || !more) return status;
         atomic_fetch_add(&own->on->done, 1);
-        *count += is_wanted(own->on->market, &into->part);
+        *count += pf_selection_takes(own->on->market->selection, &into->part);
     }
     return PF_OK;
 }
@@ -103,7 +96,7 @@ static pf_status run(worker *own)
 {
     pf_store *store;
     pf_cursor *cursor = NULL;
-    pf_query query = own->on->market->query;
+    pf_query query = own->on->market->selection->query;
     query.slice = own->slice;
     query.slices = (unsigned)own->on->market->threads;
     own->scratch = pf_scratch_new();
@@ -196,7 +189,7 @@ pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_ranking *r
     pf_market sized = *market;
     pf_status status = pf_store_read_begin(store, error);
     if (status != PF_OK) return status;
-    status = pf_store_revision_name(store, market->query.as_of, revision, error);
+    status = pf_store_revision_name(store, market->selection->query.as_of, revision, error);
     if (status == PF_OK) status = pf_store_count(store, &parts, error);
     if (parts < 256) sized.threads = 1; /* a thread costs more than it gives */
     if (status == PF_OK) status = rank_slices(&sized, parts, ranking, error);

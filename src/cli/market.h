@@ -7,15 +7,11 @@
 #ifndef CLI_MARKET_H
 #define CLI_MARKET_H
 
-#include "cli/cli.h"
-
-#include <passfet/ranking.h>
+#include "cli/selection.h"
 
 typedef struct pf_market {
     const char *database;
-    pf_query query; /* which parts; slices are set by the threads */
-    const pf_condition *condition;
-    size_t condition_count;
+    const pf_selection *selection; /* slices are set by the threads */
     const pf_sort_key *key;
     size_t key_count;
     size_t top;       /* rows to keep; 0: all */

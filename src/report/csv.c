@@ -6,22 +6,26 @@
 #include <passfet/report.h>
 #include <string.h>
 
-/* Whether a spreadsheet would run the cell as a formula. */
+/* Whether a spreadsheet would run the cell as a formula; a `'` before such a cell gets another, so
+** that taking one off again always gives the text. */
 static bool looks_like_formula(const char *text)
 {
-    return strchr("=+-@\t\r", *text) != NULL && *text;
+    if (!*text) return false;
+    if (strchr("=+-@\t\r", *text)) return true;
+    return *text == '\'' && text[1] && strchr("=+-@'", text[1]);
 }
 
 void pf_csv_text(FILE *out, const char *text)
 {
     const char *shown = text ? text : "";
-    bool quote = strpbrk(shown, "\",\r\n") || looks_like_formula(shown);
+    bool defuse = looks_like_formula(shown);
+    bool quote = defuse || *shown == '#' || strpbrk(shown, "\",;\t\r\n");
     if (!quote) {
         fputs(shown, out);
         return;
     }
     fputc('"', out);
-    if (looks_like_formula(shown)) fputc('\'', out);
+    if (defuse) fputc('\'', out);
     for (; *shown; shown++) {
         if (*shown == '"') fputc('"', out);
         fputc(*shown, out);
