@@ -30,4 +30,8 @@ void pf_report_json(FILE *out, const pf_ranking *ranking, const pf_report_source
 /* The cautions that go with every result, one line each, the last followed by NULL. */
 const char *const *pf_report_cautions(void);
 
+/* Whether some value of a derating rule is marked as quoted from memory ("M" or words with "memory"):
+** that has to be said wherever the rule is shown. */
+bool pf_rule_is_from_memory(const pf_derating *rule);
+
 #endif

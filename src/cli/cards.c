@@ -3,6 +3,7 @@
 #include "base/memory.h"
 #include "cli/builtin.h"
 
+#include <passfet/report.h>
 #include <string.h>
 
 pf_status pf_rules_load(const pf_arguments *arguments, pf_derating_rules *rules,
@@ -46,9 +47,7 @@ static pf_status captures_read(pf_captures *list, const pf_arguments *arguments,
 static pf_status add_card(pf_cards *cards, const pf_profile *profile, pf_error *error)
 {
     const pf_captures *recorded = &cards->recorded;
-    bool from_memory =
-        profile->derating.name[0] && strcmp(profile->derating.mark, "published") != 0;
-    if (from_memory) cards->remarks |= PF_REMARK_MEMORY_RULE;
+    if (pf_rule_is_from_memory(&profile->derating)) cards->remarks |= PF_REMARK_MEMORY_RULE;
     pf_status status =
         pf_plan_new(profile, recorded->view, recorded->count, &cards->plan[cards->count], error);
     if (status == PF_OK) cards->count++;

@@ -2,6 +2,7 @@
 #include "base/memory.h"
 #include "cli/commands.h"
 #include "cli/importing.h"
+#include "cli/merging.h"
 
 #include <string.h>
 #include <unistd.h>
@@ -14,6 +15,8 @@ const pf_option pf_import_options[] = {
     {"accept", NULL, "take curves that contradict each other, with a warning"},
     {"keep-good", "FILE", "store good rows, write bad ones to FILE with the reasons"},
     {"dry-run", NULL, "store nothing; show for every cell what would be stored"},
+    {"prefer", "WHOSE",
+     "for another database: ours, theirs or newer where both sides changed a part"},
     PF_BY_OPTION,
     PF_WHY_OPTION,
     PF_HELP_OPTION,
@@ -90,6 +93,7 @@ static int import(const pf_cli *cli, const pf_arguments *arguments, pf_import_ru
 int pf_command_import(const pf_cli *cli, const pf_arguments *arguments)
 {
     pf_import_run run = {.cli = cli};
+    if (pf_is_database(arguments->operand[0])) return pf_merge_database(cli, arguments);
     int exit_status = read_options(cli, arguments, &run);
     if (exit_status == PF_EXIT_DONE) exit_status = import(cli, arguments, &run);
     int closed = pf_import_run_end(&run);

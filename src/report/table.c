@@ -58,9 +58,8 @@ static void print_window(FILE *out, const pf_plan *plan)
 static void print_rule(FILE *out, const pf_derating *rule)
 {
     if (!rule->name[0]) return;
-    fprintf(out, "  Derating by %s (%s).\n", rule->name,
-            strcmp(rule->mark, "published") == 0 ? "published"
-                                                 : "quoted from memory: check the standard");
+    fprintf(out, "  Derating by %s%s.\n", rule->name,
+            pf_rule_is_from_memory(rule) ? " (quoted from memory: check the standard)" : "");
 }
 
 static void print_card(FILE *out, const pf_plan *plan)
@@ -92,8 +91,8 @@ static void print_card(FILE *out, const pf_plan *plan)
 static void print_counts(FILE *out, const pf_ranking *ranking, const pf_report_source *source)
 {
     size_t all = ranking->tally[PF_PASS] + ranking->tally[PF_UNASSESSED] + ranking->tally[PF_FAIL];
-    fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", all,
-            ranking->tally[PF_PASS], ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
+    fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", all, ranking->tally[PF_PASS],
+            ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
     if (source->revision)
         fprintf(out, " Ratings: %s, revision %s.", source->database, source->revision);
     if (source->top && source->top < all) fprintf(out, " The first %zu are shown.", source->top);

@@ -19,6 +19,16 @@ const char *const *pf_report_cautions(void)
     return caution;
 }
 
+bool pf_rule_is_from_memory(const pf_derating *rule)
+{
+    if (strstr(rule->mark, "memory")) return true;
+    for (const char *mark = strchr(rule->mark, 'M'); mark; mark = strchr(mark + 1, 'M')) {
+        bool starts = mark == rule->mark || strchr(" ;,", mark[-1]);
+        if (starts && (!mark[1] || strchr(" ;,", mark[1]))) return true;
+    }
+    return false;
+}
+
 double pf_parameter_signed(const pf_profile *profile, pf_parameter parameter, double magnitude)
 {
     bool carries = parameter == PF_SUPPLY_VOLTAGE || parameter == PF_SUPPLY_STEP_FROM ||
