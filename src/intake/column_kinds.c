@@ -140,7 +140,7 @@ static size_t curve_columns(pf_column_kind *list, const pf_column_kind *own, siz
     return count + 2;
 }
 
-#define CURVE(own) curve_columns(list, own, sizeof own / sizeof *own)
+#define CURVE(own) curve_columns(list, (own), sizeof(own) / sizeof *(own))
 
 size_t pf_column_kinds(pf_file_kind kind, pf_column_kind list[PF_COLUMN_KINDS_MAX])
 {

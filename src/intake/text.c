@@ -155,7 +155,7 @@ size_t pf_distance(const char *left, const char *right, size_t most)
 
 bool pf_near(const char *left, const char *right)
 {
-    size_t length = least(strlen(left), strlen(right));
+    size_t m = strlen(left), n = strlen(right), length = least(m, n);
     size_t most = length >= 8 ? 2 : length >= 4 ? 1 : 0;
-    return most > 0 && pf_distance(left, right, most) <= most;
+    return most > 0 && m + n - 2 * length <= most && pf_distance(left, right, most) <= most;
 }
