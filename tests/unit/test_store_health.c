@@ -346,6 +346,20 @@ static void test_a_database_without_a_rating_is_brought_up_to_date(void **state)
     pf_stored_part_clear(&stored);
 }
 
+static void test_a_view_in_place_of_a_table_is_not_followed(void **state)
+{
+    bench *on = *state;
+    pf_stored_part stored;
+    pf_stored_part_init(&stored);
+    fill(on, "ana", 1, 0);
+    tamper(on, "PRAGMA foreign_keys = OFF; PRAGMA legacy_alter_table = ON; "
+               "ALTER TABLE part RENAME TO real_part; "
+               "CREATE VIEW part AS SELECT * FROM real_part");
+    bench_reopen(on, PF_STORE_READ);
+    assert_int_equal(pf_store_part_find(on->store, "P000", NULL, &stored, &on->error), PF_DATABASE);
+    pf_stored_part_clear(&stored);
+}
+
 static void test_a_rating_that_is_not_known_is_a_newer_layout(void **state)
 {
     bench *on = *state;
@@ -372,6 +386,7 @@ int main(void)
         TEST(test_a_full_disk_leaves_the_database_as_it_was),
         TEST(test_network_file_systems_are_warned_of),
         TEST(test_a_database_without_a_rating_is_brought_up_to_date),
+        TEST(test_a_view_in_place_of_a_table_is_not_followed),
         TEST(test_a_rating_that_is_not_known_is_a_newer_layout),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
