@@ -83,10 +83,10 @@ static void tell(const checking *work, pf_oddity oddity, double found, double ex
 
 /* Tells of two numbers that should be alike. Comparisons with a NaN are false. */
 static void alike(const checking *work, pf_oddity oddity, double found, double expected,
-                  double pulse_s)
+                  double pulse_s, double refuse)
 {
     if (found > expected * WARN || found < expected / WARN)
-        tell(work, oddity, found, expected, pulse_s, REFUSE);
+        tell(work, oddity, found, expected, pulse_s, refuse);
 }
 
 /* Tells where found is above expected by more than a chart is misread by. */
@@ -129,8 +129,9 @@ static void check_soa_zth(const checking *work, const pf_soa_family *family)
         double rise_KpW = isinf(curve->pulse_s) ? steady : PF_NONE;
         if (!isinf(curve->pulse_s) && pf_zth_stated(zth))
             rise_KpW = pf_zth_at(zth, curve->pulse_s, curve->log_pulse);
+        /* makers draw DC lines for a package on a board as well: far apart is worth a look only */
         alike(work, PF_ODD_SOA_ZTH, thermal_power_W(curve) * rise_KpW, family->span_K,
-              curve->pulse_s);
+              curve->pulse_s, isinf(curve->pulse_s) ? INFINITY : REFUSE);
     }
 }
 
@@ -235,7 +236,8 @@ static void check_zth_end(const checking *work)
         tell(work, PF_ODD_ZTH_NORMALISED, end, steady, PF_NONE, WARN);
         return;
     }
-    if (end > steady || is_settled(curve)) alike(work, PF_ODD_ZTH_END, end, steady, PF_NONE);
+    if (end > steady || is_settled(curve))
+        alike(work, PF_ODD_ZTH_END, end, steady, PF_NONE, REFUSE);
 }
 
 /* A curve for a duty cycle D starts at D times its end; a single pulse starts as the square root of

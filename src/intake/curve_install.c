@@ -98,6 +98,20 @@ static void tell_repair(installing *work, const pf_repair *repair)
     if (at > 0) report(work, PF_SEVERITY_NOTE, work->place->line, &fault);
 }
 
+/* A minus belongs to P-channel parts. */
+static void check_polarity(installing *work, const pf_raw_points *points, const pf_part *part)
+{
+    pf_fault fault;
+    if (part->polarity != PF_N_CHANNEL) return;
+    for (size_t i = 0; i < points->count; i++) {
+        if (!points->item[i].negative_x && !points->item[i].negative_y) continue;
+        pf_fault_set(&fault, "positive values; are these logarithms?",
+                     "negative, and the part is N-channel");
+        report(work, PF_SEVERITY_REFUSAL, points->item[i].line, &fault);
+        return;
+    }
+}
+
 static void tell_suspicion(installing *work, const pf_repair *repair)
 {
     pf_fault fault;
@@ -212,6 +226,7 @@ pf_status pf_curve_install(pf_reader *reader, pf_raw_points *points, pf_file_kin
     if (status == PF_OK && kind == PF_KIND_ZTH) pf_zth_repair(points, &repair, on_fault, &work);
     if (repair.faults == 0) tell_repair(&work, &repair);
     tell_suspicion(&work, &repair);
+    check_polarity(&work, &raw, &change->part);
     if (status == PF_OK) status = work.status;
     if (status == PF_OK && work.good) status = put(&work, points, kind, path, change);
     if (status == PF_OK && work.good && changed(&repair)) status = keep_raw(change, &raw, kind);

@@ -207,9 +207,6 @@ static pf_status read_cell(pf_reader *reader, size_t index, parts_row *row)
     case PF_ROLE_RDSON:
         status = read_rdson(reader, index, row);
         break;
-    case PF_ROLE_POLARITY:
-        status = read_polarity(reader, index, row);
-        break;
     case PF_ROLE_SOA_CELL:
     case PF_ROLE_ZTH_CELL:
         status = read_curve(reader, index, row);
@@ -355,6 +352,8 @@ static pf_status read_row(pf_reader *reader, parts_row *row)
         status = read_soa_case(reader, pf_reader_find(reader, PF_ROLE_SOA_CASE, NULL), row);
     if (status == PF_OK)
         status = pf_reader_path(reader, pf_reader_find(reader, PF_ROLE_ZTH_PATH, NULL), &row->path);
+    int polarity = pf_reader_find(reader, PF_ROLE_POLARITY, NULL); /* curves ask for it */
+    if (status == PF_OK && polarity >= 0) status = read_polarity(reader, (size_t)polarity, row);
     for (size_t i = 0; i < reader->column_count && status == PF_OK; i++)
         status = read_cell(reader, i, row);
     if (status == PF_OK) status = check_signs(reader, row);
