@@ -176,8 +176,9 @@ pf_status pf_plan_evaluate(const pf_plan *plan, const pf_part *part, pf_scratch 
 pf_status pf_plan_evaluate_batch(const pf_plan *plan, const pf_part *const *part, size_t count,
                                  pf_scratch *scratch, pf_stress *const *stress);
 
-/* Looks at every corner and moment of every part instead of leaving out those that can be proved
-** never to be the worst (docs/methods.md, section 2). The results are the same; a check. */
-void pf_plan_look_at_all(pf_plan *plan);
+/* Sets aside, for all evaluations to come, corners and moments that can be proved never to be the worst
+** (docs/methods.md, section 2). The results are the same; it costs as much as evaluating some thousand
+** parts. PF_NO_MEMORY leaves the plan as good as before. Not while other threads use the plan. */
+pf_status pf_plan_prune(pf_plan *plan) PF_MUST_USE;
 
 #endif

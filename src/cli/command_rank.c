@@ -99,9 +99,10 @@ static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_
                               .top = on->top,
                               .remarks = cards->remarks,
                               .threads = on->threads,
+                              .all_corners = on->all_corners,
                               .progress = isatty(fileno(cli->err)) ? cli->err : NULL};
     pf_ranking_init(&ranking, (const pf_plan *const *)cards->plan, cards->count);
-    pf_status status = pf_market_rank(&market, store, &ranking, revision, &error);
+    pf_status status = pf_market_rank(&market, store, cards->plan, &ranking, revision, &error);
     int exit_status = status == PF_OK ? PF_EXIT_DONE : pf_fail(cli, status, &error);
     if (status == PF_OK) {
         const pf_report_source source = {cli->database, revision, on->top};
@@ -123,8 +124,6 @@ int pf_command_rank(const pf_cli *cli, const pf_arguments *arguments)
         exit_status =
             pf_cards_read(cli, arguments, arguments->operand, arguments->operand_count, &cards);
     if (exit_status != PF_EXIT_DONE) return exit_status;
-    for (size_t i = 0; on.all_corners && i < cards.count; i++)
-        pf_plan_look_at_all(cards.plan[i]);
     pf_status status = pf_cli_open(cli, PF_STORE_READ, &store, &error);
     exit_status = status == PF_OK ? rank(cli, store, &on, &cards) : pf_fail(cli, status, &error);
     pf_store_close(store);

@@ -182,8 +182,18 @@ static pf_status rank_slices(const pf_market *market, int64_t parts, pf_ranking 
     return status;
 }
 
-pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_ranking *ranking,
-                         char revision[PF_REVISION_NAME_ROOM], pf_error *error)
+/* Pruning costs as much as evaluating some thousand parts. */
+static pf_status prune(const pf_market *market, int64_t parts, pf_plan *const *plan, size_t plans)
+{
+    pf_status status = PF_OK;
+    if (market->all_corners || parts < 4000) return PF_OK;
+    for (size_t i = 0; i < plans && status == PF_OK; i++)
+        status = pf_plan_prune(plan[i]);
+    return status;
+}
+
+pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_plan *const *plan,
+                         pf_ranking *ranking, char revision[PF_REVISION_NAME_ROOM], pf_error *error)
 {
     int64_t parts = 0;
     pf_market sized = *market;
@@ -192,6 +202,7 @@ pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_ranking *r
     status = pf_store_revision_name(store, market->selection->query.as_of, revision, error);
     if (status == PF_OK) status = pf_store_count(store, &parts, error);
     if (parts < 256) sized.threads = 1; /* a thread costs more than it gives */
+    if (status == PF_OK) status = prune(market, parts, plan, ranking->profile_count);
     if (status == PF_OK) status = rank_slices(&sized, parts, ranking, error);
     pf_store_read_end(store);
     if (status == PF_OK) status = pf_ranking_sort(ranking, market->key, market->key_count);

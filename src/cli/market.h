@@ -17,12 +17,15 @@ typedef struct pf_market {
     size_t top;       /* rows to keep; 0: all */
     unsigned remarks; /* added to every part's */
     size_t threads;   /* >= 1 */
+    bool all_corners; /* leave none out, also where it pays */
     FILE *progress;   /* a line after a second and then again; NULL: none */
 } pf_market;
 
-/* Evaluates, sorts and cuts. revision is filled with the name of the state that was read. */
-pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_ranking *ranking,
-                         char revision[PF_REVISION_NAME_ROOM], pf_error *error) PF_MUST_USE;
+/* Evaluates under the plans of the ranking, sorts and cuts. plan: the same plans, to be pruned where
+** there are many parts. revision is filled with the name of the state that was read. */
+pf_status pf_market_rank(const pf_market *market, pf_store *store, pf_plan *const *plan,
+                         pf_ranking *ranking, char revision[PF_REVISION_NAME_ROOM],
+                         pf_error *error) PF_MUST_USE;
 
 /* The processors of this machine. */
 size_t pf_processors(void);

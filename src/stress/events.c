@@ -310,7 +310,6 @@ static void begin(trial *test, const evaluation *on, size_t index)
     outcome->cause = outcome->junction_cause = why_not(on, slot, outcome->start_degC);
     if (outcome->cause != PF_CAUSE_NONE) return;
     test->subject = pf_subject_of(on->model, outcome->start_degC, on->plan->profile.extend_soa);
-    test->subject.all_rows = on->plan->all_rows;
     test->begun = true;
 }
 

@@ -83,8 +83,8 @@ pf_status pf_plan_starts(const pf_profile *profile, const pf_slot *slot, double 
         pf_corner_at(&slot->corners, profile, i, &corner);
         start[i] = pf_start_at(profile, slot->event, &corner, crss_F);
     }
-    pf_status status = pf_waves_from_starts(waves, start, slot->corners.number,
-                                            pf_plan_hold_s(profile), !pf_is_stated(crss_F));
+    pf_status status =
+        pf_waves_from_starts(waves, start, slot->corners.number, pf_plan_hold_s(profile));
     pf_free(start);
     return status;
 }
@@ -209,9 +209,13 @@ void pf_plan_free(pf_plan *plan)
     pf_free(plan);
 }
 
-void pf_plan_look_at_all(pf_plan *plan)
+pf_status pf_plan_prune(pf_plan *plan)
 {
-    plan->all_rows = true;
+    pf_status status = PF_OK;
+    for (size_t i = 0; i < plan->count; i++)
+        for (size_t k = 0; k < plan->slot[i].waves.kernels && status == PF_OK; k++)
+            status = pf_kernel_prune(&plan->slot[i].waves.kernel[k]);
+    return status;
 }
 
 const pf_profile *pf_plan_profile(const pf_plan *plan)

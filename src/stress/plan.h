@@ -21,7 +21,6 @@ struct pf_plan {
     pf_slot slot[PF_SLOTS_MAX];
     size_t samples; /* the most that any waves need */
     double slowest_s, fastest_s;
-    bool all_rows;    /* look at every corner and moment, leave none out */
     char stall[1024]; /* "" when the card starts */
 };
 
@@ -30,8 +29,7 @@ struct pf_scratch {
     pf_bench bench;
 };
 
-/* The waves of a start_up or supply_step slot; crss_F as in pf_start_at. They are only pruned where
-** they are to be used for many parts, crss_F not stated. */
+/* The waves of a start_up or supply_step slot; crss_F as in pf_start_at. */
 pf_status pf_plan_starts(const pf_profile *profile, const pf_slot *slot, double crss_F,
                          pf_waves *waves);
 

@@ -208,9 +208,7 @@ static void respond_soa(const pf_subject *const *subject, size_t count, const pf
         if (lane < count && response[lane].cause == PF_CAUSE_NONE &&
             sample_soa(subject[lane], kernel, sample, &response[lane])) {
             any = true;
-            if (!pf_steps_put(sample, kernel->levels, kernel->lags, bench->step, lane) ||
-                subject[lane]->all_rows)
-                all = true;
+            if (!pf_steps_put(sample, kernel->levels, kernel->lags, bench->step, lane)) all = true;
         } else {
             clear_lane(bench->step, places, lane);
         }
@@ -234,8 +232,7 @@ static void respond_zth(const pf_subject *const *subject, size_t count, const pf
         if (lane >= count || !pf_zth_stated(subject[lane]->zth)) continue;
         for (size_t j = 0; j < kernel->lags; j++)
             sample[j] = pf_zth_at(subject[lane]->zth, kernel->lag[j], kernel->log_lag[j]);
-        if (!pf_steps_put(sample, 1, kernel->lags, bench->step, lane) || subject[lane]->all_rows)
-            all = true;
+        if (!pf_steps_put(sample, 1, kernel->lags, bench->step, lane)) all = true;
     }
     find_peaks(&kernel->total, all, bench->step, highest, row);
     for (size_t lane = 0; lane < count; lane++)

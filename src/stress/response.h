@@ -19,7 +19,6 @@ typedef struct pf_subject {
     const pf_soa_family *family; /* NULL: no SOA */
     double log_zth_longest;      /* ln Zth at the family's longest finite pulse */
     bool extend;                 /* beyond_soa, extend */
-    bool all_rows;               /* leave no row of a kernel out */
 } pf_subject;
 
 typedef struct pf_response {

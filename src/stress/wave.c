@@ -137,7 +137,7 @@ static double longest_of(const pf_trace *trace, size_t count)
 }
 
 static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count,
-                            pf_kernel_size size, bool prune)
+                            pf_kernel_size size)
 {
     pf_kernel *kernel = &waves->kernel[waves->kernels];
     pf_status status = pf_kernel_init(kernel, trace, count, size);
@@ -145,7 +145,7 @@ static pf_status add_kernel(pf_waves *waves, const pf_trace *trace, size_t count
     waves->kernels++;
     if (kernel->levels * kernel->lags > waves->samples)
         waves->samples = kernel->levels * kernel->lags;
-    return prune ? pf_kernel_prune(kernel) : PF_OK;
+    return PF_OK;
 }
 
 static int longest_first(const void *left, const void *right)
@@ -157,7 +157,7 @@ static int longest_first(const void *left, const void *right)
 }
 
 /* Makes kernels of waveforms whose durations lie within GROUP_SPAN of each other. */
-static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool prune)
+static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace)
 {
     double lag[PF_LAGS_MAX];
     pf_kernel_size size = start_size;
@@ -170,7 +170,7 @@ static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool
                     form[i].form.duration_s * GROUP_SPAN < form[first].form.duration_s;
         if (ends && used > first) {
             size.lags = place_lags(lag, longest_of(trace + first, used - first), STEPS, 2);
-            status = add_kernel(waves, trace + first, used - first, size, prune);
+            status = add_kernel(waves, trace + first, used - first, size);
             first = used;
         }
         if (i == waves->count || form[i].form.unbounded) continue;
@@ -185,7 +185,8 @@ static pf_status group(pf_waves *waves, corner_form *form, pf_trace *trace, bool
 static double widest_V(const pf_start *start, size_t count)
 {
     double widest = 0;
-    for (size_t i = 0; i < count; i++) widest = fmax(widest, start[i].supply_V - start[i].from_V);
+    for (size_t i = 0; i < count; i++)
+        widest = fmax(widest, start[i].supply_V - start[i].from_V);
     return widest;
 }
 
@@ -214,15 +215,14 @@ static pf_status allocate(pf_waves *waves, size_t count)
     return waves->wave && waves->kernel ? PF_OK : PF_NO_MEMORY;
 }
 
-pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s,
-                               bool prune)
+pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s)
 {
     pf_status status = allocate(waves, count);
     corner_form *form = pf_allocate(count, sizeof *form);
     pf_trace *trace = pf_allocate(count, sizeof *trace);
     if (!form || !trace) status = PF_NO_MEMORY;
     if (status == PF_OK) status = integrate(waves, start, hold_s, form);
-    if (status == PF_OK) status = group(waves, form, trace, prune);
+    if (status == PF_OK) status = group(waves, form, trace);
     for (size_t i = 0; form && i < count; i++)
         pf_waveform_clear(&form[i].form);
     pf_free(form);
@@ -341,7 +341,7 @@ static pf_status add_capture(pf_waves *waves, const pf_trace *trace)
     size.lags = place_lags(lag, longest_of(trace, 1), CAPTURE_STEPS, 4);
     size.extra = moment;
     size.extra_count = place_looks(trace, waves->wave[0].energy_J, moment);
-    return add_kernel(waves, trace, 1, size, true);
+    return add_kernel(waves, trace, 1, size);
 }
 
 pf_status pf_waves_from_capture(pf_waves *waves, const pf_capture *capture)

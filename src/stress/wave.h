@@ -39,8 +39,8 @@ pf_start pf_start_at(const pf_profile *profile, pf_event event, const pf_corner 
 /* Waveforms of count starts, held until hold_s where an output sticks. prune: set rows aside that
  *can
  ** never be the worst. PF_NO_MEMORY is the only failure. */
-pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count, double hold_s,
-                               bool prune) PF_MUST_USE;
+pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count,
+                               double hold_s) PF_MUST_USE;
 
 /* A recorded waveform; samples below zero (noise, offset) count as zero. PF_BAD_ARGUMENT for fewer
 ** than two samples or a time that does not rise. */
