@@ -24,3 +24,12 @@ target_link_libraries(store_driver PRIVATE pf_store)
 add_test(NAME test_store_calls COMMAND sh ${CMAKE_CURRENT_SOURCE_DIR}/fault/kill_at_calls.sh
   $<TARGET_FILE:store_driver>)
 set_tests_properties(test_store_calls PROPERTIES SKIP_RETURN_CODE 77)
+find_package(Python3 COMPONENTS Interpreter)
+if(Python3_FOUND AND TARGET passfet)
+  add_test(NAME test_store_commands COMMAND ${Python3_EXECUTABLE}
+    ${CMAKE_CURRENT_SOURCE_DIR}/fault/flip_commands.py $<TARGET_FILE:passfet>
+    ${PROJECT_SOURCE_DIR}/data/demo)
+endif()
+add_test(NAME test_store_disk_full COMMAND sh ${CMAKE_CURRENT_SOURCE_DIR}/fault/disk_full.sh
+  $<TARGET_FILE:store_driver>)
+set_tests_properties(test_store_disk_full PROPERTIES SKIP_RETURN_CODE 77)

@@ -67,7 +67,7 @@ static pf_status decide(merging *merge, const unsigned char *our_hash,
                         pf_error *error)
 {
     pf_store *ours = merge->ours;
-    bool ahead, forward = false;
+    bool ahead = false, forward = false;
     pf_status status = knew(ours, &theirs->part, their_hash, &ahead, error);
     if (status == PF_OK && !ahead)
         status = knew(merge->theirs, &theirs->part, our_hash, &forward, error);
