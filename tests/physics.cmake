@@ -37,3 +37,7 @@ pf_test(test_reference SOURCES reference/test_reference.c reference/quantities.c
 add_custom_target(reference_page
   COMMAND test_reference --write ${PROJECT_SOURCE_DIR}/docs/testing_worst.md ${RECORDS})
 pf_test(test_properties SOURCES reference/test_properties.c LIBRARIES ${PHYSICS})
+
+# The demo ratings and the derating rules, as files.
+pf_test(test_device_demo SOURCES unit/test_device_demo.c LIBRARIES ${PHYSICS} pf_intake
+  ARGUMENTS ${PROJECT_SOURCE_DIR}/data)

@@ -13,7 +13,7 @@
 #include <passfet/stress.h>
 #include <stdlib.h>
 
-#define CASES 40 /* parts per start control */
+#define CASES 24 /* per start control and kind of recording */
 #define OPTIMISTIC 0.003
 #define PESSIMISTIC 0.01
 

@@ -114,6 +114,48 @@ static void test_two_currents_superpose(void **state)
     }
 }
 
+/* --- Convergence ------------------------------------------------------------------------------ */
+
+/* A power that decays as exp(-t), 4 s long, in n straight pieces, on one thermal pole of 1 s. */
+static double decay_rise(int pieces)
+{
+    double t[129], v[129], i[129];
+    const pf_capture capture = {"decay", (size_t)pieces + 1, t, v, i};
+    for (int k = 0; k <= pieces; k++) {
+        t[k] = 4.0 * k / pieces;
+        v[k] = 1;
+        i[k] = exp(-t[k]);
+    }
+    pf_profile profile;
+    pf_part part;
+    pf_stress stress;
+    pf_profile_init(&profile);
+    profile_state(&profile, bench_profile_text);
+    pf_part_init(&part);
+    part_state(&part, bench_part_text);
+    part_state(&part, "foster=100:1");
+    assess(&profile, &capture, &part, &stress);
+    const pf_outcome *o = &stress.outcome[stress.count - 1];
+    pf_part_clear(&part);
+    return o->peak_junction_degC - o->start_degC;
+}
+
+/* The pole answers with 100 K/W t exp(-t), at most 100/e; chords of a recording are off by the square
+** of their length. */
+static void test_recordings_converge_with_the_square_of_their_step(void **state)
+{
+    (void)state;
+    double exact = 100 * exp(-1), error[3];
+    for (int k = 0; k < 3; k++)
+        error[k] = decay_rise(4 << k) / exact - 1;
+    print_message("convergence: errors %.4f %.4f %.4f %%, orders %.2f %.2f\n", 100 * error[0],
+                  100 * error[1], 100 * error[2], log2(error[0] / error[1]),
+                  log2(error[1] / error[2]));
+    assert_double(log2(error[0] / error[1]), >, 1.7);
+    assert_double(log2(error[1] / error[2]), >, 1.7);
+    assert_near(decay_rise(128), exact, 1e-3);
+}
+
 /* --- Monotony --------------------------------------------------------------------------------- */
 
 static void scale(pf_profile *profile, pf_parameter parameter, double factor)
@@ -360,6 +402,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_rises_are_linear_in_current),
         cmocka_unit_test(test_two_currents_superpose),
+        cmocka_unit_test(test_recordings_converge_with_the_square_of_their_step),
         cmocka_unit_test(test_margin_never_rises_with_supply_voltage),
         cmocka_unit_test(test_margin_never_rises_with_ambient_temperature),
         cmocka_unit_test(test_margin_never_rises_with_fault_time),
