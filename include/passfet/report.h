@@ -24,7 +24,7 @@ void pf_report_table(FILE *out, const pf_ranking *ranking, const pf_report_sourc
 /* RFC 4180, one row a part; cells that a spreadsheet would run as a formula begin with `'`. */
 void pf_report_csv(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
 
-/* One object as docs/commands.md describes it; numbers read back unchanged, null for not stated. */
+/* One object as docs/passfet.1 describes it; numbers read back unchanged, null for not stated. */
 void pf_report_json(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
 
 /* The cautions that go with every result, one line each, the last followed by NULL. */
