@@ -57,7 +57,8 @@ void pf_store_limit_pages(pf_store *store, int pages);
 /* ---- reading ---- */
 
 /* Several reads that belong together see one state of the database between these two. Writers have
-** to wait meanwhile, so be quick. */
+** to wait meanwhile, so be quick. Several stores of one file that are between these two at the same
+** time see the same state: so slices are read by threads, each with a store of its own. */
 pf_status pf_store_read_begin(pf_store *store, pf_error *error) PF_MUST_USE;
 void pf_store_read_end(pf_store *store);
 

@@ -67,9 +67,10 @@ pf_status load_import(pf_store *store, unsigned tag, const char *key, int64_t *n
     pf_part_init(&merged);
     for (unsigned i = 0; i < LOAD_PARTS && status == PF_OK; i++) {
         pf_part_change change;
-        status = make_change(&change, tag, i)
-                     ? pf_store_import_part(store, &change, &merged, &effect, error)
-                     : PF_NO_MEMORY;
+        if (make_change(&change, tag, i))
+            status = pf_store_import_part(store, &change, &merged, &effect, error);
+        else
+            status = pf_error_set(error, PF_NO_MEMORY, "out of memory");
         pf_part_change_clear(&change);
     }
     pf_part_clear(&merged);

@@ -9,6 +9,7 @@
 #include <cmocka.h>
 #include <math.h>
 #include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 
 #define MONDAY "2025-03-03T09:00:00Z"
@@ -265,6 +266,66 @@ static void test_the_same_part_twice_in_an_import_is_one_revision(void **state)
     pf_stored_part_clear(&stored);
 }
 
+/* A double between 0 and 1 that needs all its digits. */
+static double any(unsigned *seed)
+{
+    *seed = *seed * 1664525 + 1013904223;
+    return (*seed >> 8) / 16777216.0 + 1e-9;
+}
+
+/* A part of random ratings and curves, each of them left out now and then. */
+static void change_random(pf_part_change *change, unsigned seed)
+{
+    char name[16];
+    size_t count;
+    const pf_rating_field *field = pf_rating_fields(&count);
+    unsigned at = seed;
+    pf_foster_pair pair[5];
+    pf_zth_point zth[7];
+    snprintf(name, sizeof name, "R%u", seed);
+    change_make(change, name, any(&at) < 0.5 ? "Ohmwerk" : NULL, seed);
+    for (size_t i = 0; i < count; i++)
+        if (any(&at) < 0.5 && strstr(field[i].csv, "vth") == NULL && i != 0) {
+            *pf_part_rating(&change->part, &field[i]) =
+                field[i].lowest + any(&at) * (field[i].highest - field[i].lowest);
+            change->ratings_given |= UINT64_C(1) << i;
+        }
+    for (size_t i = 0; i < 5; i++)
+        pair[i] = (pf_foster_pair){any(&at), any(&at) * 1e-3};
+    for (size_t i = 0; i < 7; i++)
+        zth[i] = (pf_zth_point){any(&at), any(&at) * 100};
+    if (any(&at) < 0.3)
+        assert_int_equal(pf_part_set_foster(&change->part, PF_JUNCTION_CASE, pair, 5), PF_OK);
+    if (any(&at) < 0.3)
+        assert_int_equal(pf_part_set_zth(&change->part, PF_JUNCTION_AMBIENT, zth, 7), PF_OK);
+    change->thermal_given[PF_JUNCTION_AMBIENT] = true;
+    if (any(&at) < 0.2) assert_int_equal(pf_part_set_soa(&change->part, NULL, 0), PF_OK);
+}
+
+static void test_two_thousand_random_parts_read_back_bit_for_bit(void **state)
+{
+    bench *on = *state;
+    pf_part_change *change = calloc(2000, sizeof *change);
+    pf_stored_part stored;
+    size_t findings;
+    pf_stored_part_init(&stored);
+    for (unsigned i = 0; i < 2000; i++)
+        change_random(&change[i], i);
+    import_all(on, "ana", MONDAY, change, 2000);
+    for (unsigned i = 0; i < 2000; i++) {
+        char name[16];
+        snprintf(name, sizeof name, "R%u", i);
+        change_random(&change[0], i);
+        find_part(on, name, &stored);
+        assert_true(pf_part_equal(&change[0].part, &stored.part));
+        pf_part_change_clear(&change[0]);
+    }
+    assert_int_equal(pf_store_verify(on->store, NULL, NULL, &findings, &on->error), PF_OK);
+    assert_int_equal(findings, 0);
+    pf_stored_part_clear(&stored);
+    free(change);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -281,6 +342,7 @@ int main(void)
         TEST(test_a_rolled_back_import_leaves_nothing),
         TEST(test_the_content_hash_knows_no_history),
         TEST(test_the_same_part_twice_in_an_import_is_one_revision),
+        TEST(test_two_thousand_random_parts_read_back_bit_for_bit),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
