@@ -42,7 +42,8 @@ static instant find_instant(const pf_subject *subject, double time_s, double log
     if (is_beyond(subject, at.place)) {
         at.beyond.log_zth_ratio =
             subject->log_zth_longest - log(pf_zth_at(subject->zth, time_s, log_time));
-        *remarks |= subject->family->dc ? PF_REMARK_DC_BOUND : PF_REMARK_EXTENDED;
+        if (subject->family->dc || subject->extend)
+            *remarks |= subject->family->dc ? PF_REMARK_DC_BOUND : PF_REMARK_EXTENDED;
     }
     return at;
 }
