@@ -92,18 +92,21 @@ static bool sample_level(const pf_subject *subject, const pf_kernel *kernel, siz
     return true;
 }
 
-/* The lags as instants. Where the current steps down behind the longest curve (a DC line without a
-*Zth
-** that leads there), the step is taken at the lag before it, never after it. */
+/* The lags as instants. Where the current steps down behind the longest curve (a DC line without a Zth
+** that leads there) and that curve's pulse width is no lag, the step is taken at the lag before it,
+** never after it. */
 static void find_instants(const pf_subject *subject, const pf_kernel *kernel, instant *at,
                           unsigned *remarks)
 {
     size_t last = kernel->lags - 1;
+    double longest = pf_soa_longest_log(subject->family);
     for (size_t j = 0; j <= last; j++)
         at[j] = find_instant(subject, kernel->lag[j], kernel->log_lag[j], remarks);
     if (!subject->family->dc || pf_zth_stated(subject->zth)) return;
-    for (size_t j = 0; j < last; j++)
-        if (is_beyond(subject, at[j + 1].place)) at[j] = at[j + 1];
+    for (size_t j = 0; j < last; j++) {
+        bool lag_is_pulse = fabs(kernel->log_lag[j] - longest) < 1e-9;
+        if (is_beyond(subject, at[j + 1].place) && !lag_is_pulse) at[j] = at[j + 1];
+    }
 }
 
 /* Fills the samples span/I_SOA of a kernel's grid. False with the cause where one is missing. */

@@ -32,6 +32,27 @@ static const pf_kernel_size start_size = {.levels = 17, .falls = 64};
 #define MOMENTS 512
 static const pf_kernel_size capture_size = {.levels = 33};
 
+static size_t insert_lag(double lag[PF_LAGS_MAX], size_t lags, size_t at, double value_s)
+{
+    if (lags == PF_LAGS_MAX) return lags;
+    for (size_t i = lags; i > at; i--)
+        lag[i] = lag[i - 1];
+    lag[at] = value_s;
+    return lags + 1;
+}
+
+/* Adds a lag just behind a pulse width that is one: where a longest SOA line ends and a DC line takes
+** over at once, the step lies between the two. */
+static size_t place_step(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
+{
+    size_t at = 1;
+    while (at < lags && lag[at] < pulse_s)
+        at++;
+    double behind_s = pulse_s * (1 + 1e-4);
+    bool fits = at + 1 < lags && lag[at] == pulse_s && lag[at + 1] > behind_s;
+    return fits ? insert_lag(lag, lags, at + 1, behind_s) : lags;
+}
+
 /* Moves the lag nearest to a pulse width there, or adds one. */
 static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
 {
@@ -44,11 +65,8 @@ static size_t place_pulse(double lag[PF_LAGS_MAX], size_t lags, double pulse_s)
         lag[at] = pulse_s;
     } else if (below < 0.3 * (below + above) && at > 1) {
         lag[at - 1] = pulse_s;
-    } else if (lags < PF_LAGS_MAX) {
-        for (size_t i = lags; i > at; i--)
-            lag[i] = lag[i - 1];
-        lag[at] = pulse_s;
-        return lags + 1;
+    } else {
+        return insert_lag(lag, lags, at, pulse_s);
     }
     return lags;
 }
@@ -66,6 +84,7 @@ static size_t place_lags(double lag[PF_LAGS_MAX], double duration_s, size_t step
             double pulse_s =
                 decade < 0 ? mantissa[i] / pow(10, -decade) : mantissa[i] * pow(10, decade);
             if (pulse_s > lag[2]) lags = place_pulse(lag, lags, pulse_s);
+            if (pulse_s > lag[2] && i == 0) lags = place_step(lag, lags, pulse_s);
         }
     return lags;
 }
