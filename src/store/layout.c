@@ -87,12 +87,17 @@ static pf_status run_schema(pf_store *store, const char *text, pf_error *error)
     return status;
 }
 
-static pf_status lay_out(pf_store *store, pf_error *error)
+/* What leads from each layout to the next; layout 0 is an empty file. */
+static const char *const migrations[PF_LAYOUT] = {pf_schema_001_layout};
+
+static pf_status migrate(pf_store *store, int64_t from, pf_error *error)
 {
     char header[96];
     sqlite3_snprintf(sizeof header, header, "PRAGMA application_id=%d; PRAGMA user_version=%d",
                      PF_APPLICATION_ID, PF_LAYOUT);
-    pf_status status = run_schema(store, pf_schema_001_layout, error);
+    pf_status status = PF_OK;
+    for (int64_t layout = from; layout < PF_LAYOUT && status == PF_OK; layout++)
+        status = run_schema(store, migrations[layout], error);
     if (status == PF_OK) status = run_schema(store, pf_schema_views, error);
     if (status == PF_OK) status = pf_store_run(store, header, error);
     return status;
@@ -167,16 +172,25 @@ static pf_status add_missing(pf_store *store, pf_error *error)
     return status == PF_OK ? run_schema(store, pf_schema_views, error) : status;
 }
 
-/* Does work(store) in a transaction of its own, after looking again at what is to be done: another
-** process may have done it in between. */
+static pf_status read_version(pf_store *store, int64_t *version, pf_error *error)
+{
+    pf_status status = pf_store_number(store, "PRAGMA user_version", 0, version, error);
+    if (status == PF_OK && (*version < 0 || *version > PF_LAYOUT))
+        return pf_error_set(error, PF_DATABASE, "%s was written by a newer passfet (layout %d)",
+                            store->path, (int)*version);
+    return status;
+}
+
+/* In a transaction of its own, after looking again at what is to be done: another process may have
+** done it in between. */
 static pf_status bring_up_to_date(pf_store *store, pf_error *error)
 {
     bool missing = false;
-    int64_t tables = 0;
+    int64_t version;
     pf_status status = pf_store_run(store, "BEGIN IMMEDIATE", error);
     if (status != PF_OK) return status;
-    status = pf_store_number(store, "SELECT count(*) FROM sqlite_schema", 0, &tables, error);
-    if (status == PF_OK && tables == 0) status = lay_out(store, error);
+    status = read_version(store, &version, error);
+    if (status == PF_OK && version < PF_LAYOUT) status = migrate(store, version, error);
     if (status == PF_OK) status = compare_columns(store, &missing, error);
     if (status == PF_OK && missing) status = add_missing(store, error);
     if (status == PF_OK && missing) status = compare_columns(store, &missing, error);
@@ -187,19 +201,17 @@ static pf_status bring_up_to_date(pf_store *store, pf_error *error)
 
 pf_status pf_layout_settle(pf_store *store, bool write, bool create, pf_error *error)
 {
-    int64_t tables, version = 0;
-    bool missing;
-    pf_status status =
-        pf_store_number(store, "SELECT count(*) FROM sqlite_schema", 0, &tables, error);
-    if (status == PF_OK) status = pf_store_number(store, "PRAGMA user_version", 0, &version, error);
+    int64_t version;
+    bool missing = false;
+    pf_status status = read_version(store, &version, error);
     if (status != PF_OK) return status;
-    if (version > PF_LAYOUT)
-        return pf_error_set(error, PF_DATABASE, "%s was written by a newer passfet (layout %d)",
+    if (version == 0 && !create)
+        return pf_error_set(error, PF_NOT_FOUND, "%s is empty: import ratings first", store->path);
+    if (version < PF_LAYOUT && !write)
+        return pf_error_set(error, PF_DATABASE,
+                            "%s has layout %d: import into it once, which brings it up to date",
                             store->path, (int)version);
-    if (tables == 0)
-        return create ? bring_up_to_date(store, error)
-                      : pf_error_set(error, PF_NOT_FOUND, "%s is empty: import ratings first",
-                                     store->path);
-    status = compare_columns(store, &missing, error);
-    return status == PF_OK && missing && write ? bring_up_to_date(store, error) : status;
+    if (version == PF_LAYOUT) status = compare_columns(store, &missing, error);
+    bool stale = version < PF_LAYOUT || (missing && write);
+    return status == PF_OK && stale ? bring_up_to_date(store, error) : status;
 }
