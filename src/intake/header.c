@@ -263,7 +263,8 @@ pf_status pf_header_take(pf_reader *reader)
     reader->part_column = pf_reader_find(reader, PF_ROLE_TEXT, "part");
     reader->maker_column = pf_reader_find(reader, PF_ROLE_TEXT, "maker");
     reader->units_may_follow = true;
-    bool nameless = reader->part_column < 0 && !reader->options->part_name;
+    bool named = reader->options->part_name && best.kind != PF_KIND_PARTS;
+    bool nameless = reader->part_column < 0 && !named;
     bool unread = false;
     for (size_t i = 0; i < reader->column_count; i++)
         unread |= reader->column[i].unread && best.kind != PF_KIND_PARTS;
