@@ -25,6 +25,13 @@ static pf_subject subject_of(const context *on, const pf_outcome *outcome)
                               on->plan->profile.extend_soa);
 }
 
+/* 0 where the event starts at its limit already; NaN where the family is not known. */
+static double derating_of(const context *on, const pf_outcome *outcome, double span_K)
+{
+    double share = (on->stress->allowed_degC - outcome->start_degC) / span_K;
+    return share < 0 ? 0 : share;
+}
+
 /* V, I and t of a rectangle at a corner. */
 static void rectangle_at(const context *on, const pf_slot *slot, unsigned corner, double *vds_V,
                          double *id_A, double *time_s)
@@ -61,7 +68,7 @@ static void view_rectangle(const context *on, const pf_slot *slot, const pf_outc
     pf_subject subject = subject_of(on, outcome);
     rectangle_at(on, slot, outcome->corner, &view->vds_V, &view->id_A, &view->time_s);
     pf_reading_take(&subject, view->vds_V, view->time_s, &view->soa);
-    view->derating = (on->stress->allowed_degC - outcome->start_degC) / view->soa.span_K;
+    view->derating = derating_of(on, outcome, view->soa.span_K);
     view->limit_A = view->derating * view->soa.current_A;
     find_hottest(on, slot, subject.zth, view);
 }
@@ -87,7 +94,7 @@ static void estimate(const context *on, const pf_outcome *outcome, const pf_even
     *made = (pf_estimate){.vds_V = view->voltage_at_peak_V, .time_s = time_s};
     made->id_A = outcome->peak_power_W / made->vds_V;
     pf_reading_take(&subject, made->vds_V, time_s, &made->soa);
-    made->derating = (on->stress->allowed_degC - outcome->start_degC) / made->soa.span_K;
+    made->derating = derating_of(on, outcome, made->soa.span_K);
     made->limit_A = made->derating * made->soa.current_A;
     made->margin = made->limit_A / made->id_A;
     made->safe = made->margin <= outcome->soa_margin;
@@ -121,11 +128,9 @@ static pf_status view_waves(const context *on, size_t index, const pf_outcome *o
     pf_subject subject = subject_of(on, outcome);
     pf_status status = waveform_of(on, index, outcome, &line);
     if (status != PF_OK) return status;
-    view->derating = subject.family
-                         ? (on->stress->allowed_degC - outcome->start_degC) / subject.family->span_K
-                         : PF_NONE;
+    view->derating = derating_of(on, outcome, subject.family ? subject.family->span_K : PF_NONE);
     view->voltage_at_peak_V = pf_polyline_peak_V(&line);
-    if (line.count > 1 && pf_is_stated(outcome->soa_margin)) {
+    if (line.count > 1 && outcome->soa_margin > 0) {
         pf_steps_take(&subject, &line, outcome->worst_time_s, view);
         estimate(on, outcome, view, outcome->duration_s / 2, &view->half_time);
         estimate(on, outcome, view, outcome->energy_J / outcome->peak_power_W, &view->equal_energy);

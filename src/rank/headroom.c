@@ -10,11 +10,12 @@
 
 /* Everything that the probes of one parameter share. */
 typedef struct varying {
-    const pf_plan *plan;
-    const pf_part *part;
+    const pf_plan *plan; /* of the variant personal */
+    pf_variant personal;
+    pf_part part; /* without C_rss, which is in the plan */
     pf_scratch *scratch;
     pf_parameter parameter;
-    const pf_assessment *known; /* under the plan itself */
+    pf_assessment known; /* under the plan itself */
     bool concerned[PF_SLOTS_MAX];
     pf_verdict others; /* of the checks that no probe makes again */
     pf_variant variant;
@@ -57,8 +58,8 @@ static double least_slack(const pf_assessment *assessment)
 static pf_verdict verdict_of_others(const varying *on)
 {
     pf_verdict worst = PF_PASS;
-    for (size_t i = 0; i < on->known->check_count; i++) {
-        const pf_check *check = &on->known->check[i];
+    for (size_t i = 0; i < on->known.check_count; i++) {
+        const pf_check *check = &on->known.check[i];
         if (check->slot < 0 || on->concerned[check->slot]) continue;
         if (check->verdict > worst) worst = check->verdict;
     }
@@ -101,10 +102,10 @@ static pf_status assess_at(varying *on, double value, bool *valid)
     *valid = pf_profile_finish(&changed, note_wrong, &wrong) == PF_OK;
     if (!*valid) on->wrong = wrong;
     if (!*valid) return PF_OK;
-    pf_status status =
-        pf_variant_init(&on->variant, on->plan, &changed, on->parameter, on->concerned);
+    pf_status status = pf_variant_init(&on->variant, on->plan, &changed, on->parameter,
+                                       on->concerned, on->personal.crss_F);
     if (status != PF_OK) return status;
-    status = pf_assess(&on->variant.plan, on->part, on->scratch, &on->assessment);
+    status = pf_assess(&on->variant.plan, &on->part, on->scratch, &on->assessment);
     if (on->events_only) keep_events(&on->assessment);
     on->verdict = worse(on->assessment.verdict, on->others);
     if (status != PF_OK) pf_variant_clear(&on->variant);
@@ -140,11 +141,11 @@ static double relative_of(pf_parameter parameter, double from, double value)
 /* The check that decides at the last probe, with the corner of its event. */
 static void name_stop(const varying *on, pf_room *room)
 {
-    const pf_assessment *from = on->others > on->assessment.verdict ? on->known : &on->assessment;
+    const pf_assessment *from = on->others > on->assessment.verdict ? &on->known : &on->assessment;
     const pf_check *stop = pf_assessment_decisive(from);
     if (!stop) return;
     room->stop = *stop;
-    if (stop->slot < 0 || from == on->known) return;
+    if (stop->slot < 0 || from == &on->known) return;
     size_t slot = (size_t)stop->slot;
     room->stop.slot = (int)on->variant.base[slot];
     room->corner = from->stress.outcome[slot].corner;
@@ -203,9 +204,26 @@ static pf_status search(varying *on, bool upward, double from, pf_room *room)
     return flip.found ? describe(on, room) : PF_OK;
 }
 
-static void vary(varying *on, const pf_assessment *known, pf_parameter parameter)
+/* Makes what all parameters share; varying_clear ends it where PF_OK. */
+static pf_status varying_init(varying *on, const pf_plan *plan, const pf_part *part,
+                              pf_scratch *scratch)
 {
-    on->known = known;
+    *on = (varying){.scratch = scratch};
+    pf_status status = pf_variant_personal(&on->personal, plan, part, &on->part);
+    if (status != PF_OK) return status;
+    on->plan = &on->personal.plan;
+    status = pf_assess(on->plan, &on->part, scratch, &on->known);
+    if (status != PF_OK) pf_variant_clear(&on->personal);
+    return status;
+}
+
+static void varying_clear(varying *on)
+{
+    pf_variant_clear(&on->personal);
+}
+
+static void vary(varying *on, pf_parameter parameter)
+{
     on->parameter = parameter;
     pf_variant_concerns(on->plan, parameter, on->concerned);
     on->others = verdict_of_others(on);
@@ -215,20 +233,21 @@ static void vary(varying *on, const pf_assessment *known, pf_parameter parameter
 static pf_status search_from_interval(varying *on, bool upward, pf_room *room)
 {
     const pf_interval *interval = &on->plan->profile.value[on->parameter];
-    bool from_max = upward == (on->known->verdict == PF_PASS);
+    bool from_max = upward == (on->known.verdict == PF_PASS);
     return search(on, upward, from_max ? interval->max : interval->min, room);
 }
 
 pf_status pf_headroom_of(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                          pf_parameter parameter, bool upward, pf_room *room)
 {
-    pf_assessment known;
-    varying on = {.plan = plan, .part = part, .scratch = scratch};
+    varying on;
     if (!pf_is_stated(plan->profile.value[parameter].max)) return PF_NOT_STATED;
-    pf_status status = pf_assess(plan, part, scratch, &known);
+    pf_status status = varying_init(&on, plan, part, scratch);
     if (status != PF_OK) return status;
-    vary(&on, &known, parameter);
-    return search_from_interval(&on, upward, room);
+    vary(&on, parameter);
+    status = search_from_interval(&on, upward, room);
+    varying_clear(&on);
+    return status;
 }
 
 /* The same flip found from both sides. */
@@ -252,19 +271,20 @@ static int nearest_first(const void *left, const void *right)
 pf_status pf_headroom(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                       pf_room room[PF_ROOMS_MAX], size_t *count)
 {
-    pf_assessment known;
-    varying on = {.plan = plan, .part = part, .scratch = scratch};
-    pf_status status = pf_assess(plan, part, scratch, &known);
+    varying on;
+    pf_status status = varying_init(&on, plan, part, scratch);
     *count = 0;
+    if (status != PF_OK) return status;
     for (int i = 0; i < PF_PARAMETER_COUNT && status == PF_OK; i++) {
         if (!pf_is_stated(plan->profile.value[i].max)) continue;
-        vary(&on, &known, (pf_parameter)i);
+        vary(&on, (pf_parameter)i);
         pf_room *down = &room[*count], *up = down + 1;
         status = search_from_interval(&on, false, down);
         if (status == PF_OK) status = search_from_interval(&on, true, up);
         *count += is_repeat(down, up) ? 1 : 2;
     }
     qsort(room, *count, sizeof *room, nearest_first);
+    varying_clear(&on);
     return status;
 }
 
@@ -283,7 +303,7 @@ static pf_status solve(varying *on, pf_room *room)
 {
     double from = on->plan->profile.value[on->parameter].max;
     pf_room other;
-    pf_status status = search(on, on->known->verdict == PF_PASS, from, room);
+    pf_status status = search(on, on->known.verdict == PF_PASS, from, room);
     if (status != PF_OK || room->kind != PF_ROOM_NEVER) return status;
     status = search(on, !room->upward, from, &other);
     if (status == PF_OK && other.kind == PF_ROOM_FLIPS) *room = other;
@@ -293,23 +313,21 @@ static pf_status solve(varying *on, pf_room *room)
 pf_status pf_solve(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                    pf_parameter parameter, pf_room *room)
 {
-    pf_assessment known;
-    varying on = {.plan = plan, .part = part, .scratch = scratch};
+    varying on;
     if (!pf_is_stated(plan->profile.value[parameter].max)) return PF_NOT_STATED;
-    pf_status status = pf_assess(plan, part, scratch, &known);
+    pf_status status = varying_init(&on, plan, part, scratch);
     if (status != PF_OK) return status;
-    vary(&on, &known, parameter);
-    return solve(&on, room);
+    vary(&on, parameter);
+    status = solve(&on, room);
+    varying_clear(&on);
+    return status;
 }
 
-/* The known events and the verdict of faults alone: what a timer can do nothing about is left out. */
-static void vary_faults(varying *on, pf_assessment *known)
+/* Faults alone: what a timer can do nothing about is left out. */
+static void vary_faults(varying *on)
 {
-    known->check_count = 0;
-    on->known = known;
     on->parameter = PF_FAULT_TIME;
     on->events_only = true;
-    on->others = PF_PASS;
     for (size_t i = 0; i < on->plan->count; i++) {
         pf_event event = on->plan->slot[i].event;
         on->concerned[i] =
@@ -320,9 +338,9 @@ static void vary_faults(varying *on, pf_assessment *known)
 pf_status pf_longest_fault(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                            pf_room *room)
 {
-    pf_assessment known = {.verdict = PF_PASS};
-    varying on = {.plan = plan, .part = part, .scratch = scratch};
-    vary_faults(&on, &known);
+    varying on = {.plan = plan, .part = *part, .scratch = scratch};
+    on.personal.crss_F = PF_NONE;
+    vary_faults(&on);
     double from = plan->profile.value[PF_FAULT_TIME].max;
     pf_status status = search(&on, true, from, room);
     if (status != PF_OK || room->here == PF_PASS) return status;

@@ -8,8 +8,10 @@
 #include <stdlib.h>
 
 typedef struct survey {
-    const pf_plan *plan;
-    const pf_part *part;
+    const pf_plan *plan; /* of the variant personal */
+    const pf_part *part; /* without C_rss, which is in the plan */
+    const pf_plan *base;
+    const pf_part *whole;
     pf_scratch *scratch;
     double margin; /* with nothing moved */
     pf_influence *influence;
@@ -58,7 +60,8 @@ static pf_status move_parameter(survey *on, pf_parameter parameter, int directio
     interval->typ = moved_by(interval->typ, quantity, direction);
     interval->max = moved_by(interval->max, quantity, direction);
     if (pf_profile_finish(&changed, NULL, NULL) != PF_OK) return PF_OK;
-    pf_status status = pf_variant_init(&on->variant, on->plan, &changed, parameter, all);
+    pf_status status =
+        pf_variant_init(&on->variant, on->plan, &changed, parameter, all, on->whole->crss_F);
     if (status != PF_OK) return status;
     status = pf_assess(&on->variant.plan, on->part, on->scratch, &on->moved);
     pf_variant_clear(&on->variant);
@@ -98,10 +101,10 @@ static void move_whole(pf_part *part, pf_whole whole, int direction)
     }
 }
 
-static pf_status assess_moved(survey *on, const pf_part *moved, int direction,
+static pf_status assess_moved(survey *on, const pf_plan *plan, const pf_part *moved, int direction,
                               pf_influence *influence)
 {
-    pf_status status = pf_assess(on->plan, moved, on->scratch, &on->moved);
+    pf_status status = pf_assess(plan, moved, on->scratch, &on->moved);
     if (status == PF_OK) take(on, influence, direction);
     return status;
 }
@@ -117,7 +120,7 @@ static pf_status survey_wholes(survey *on)
             pf_part_init(&moved);
             status = pf_part_copy(&moved, on->part);
             move_whole(&moved, (pf_whole)whole, direction);
-            if (status == PF_OK) status = assess_moved(on, &moved, direction, influence);
+            if (status == PF_OK) status = assess_moved(on, on->plan, &moved, direction, influence);
             pf_part_clear(&moved);
         }
     }
@@ -131,13 +134,14 @@ static pf_status survey_ratings(survey *on)
     pf_status status = PF_OK;
     const pf_rating_field *field = pf_rating_fields(&fields);
     for (size_t i = 0; i < fields && status == PF_OK; i++) {
-        double value = pf_part_rating_value(on->part, &field[i]);
+        double value = pf_part_rating_value(on->whole, &field[i]);
+        bool in_plan = !pf_is_stated(pf_part_rating_value(on->part, &field[i])); /* C_rss */
         if (!pf_is_stated(value)) continue;
         pf_influence *influence = add(on, field[i].csv, true, field[i].quantity);
         for (int direction = -1; direction <= 1 && status == PF_OK; direction += 2) {
-            pf_part moved = *on->part;
+            pf_part moved = in_plan ? *on->whole : *on->part;
             *pf_part_rating(&moved, &field[i]) = moved_by(value, field[i].quantity, direction);
-            status = assess_moved(on, &moved, direction, influence);
+            status = assess_moved(on, in_plan ? on->base : on->plan, &moved, direction, influence);
         }
     }
     return status;
@@ -175,12 +179,20 @@ static void order(pf_influence *influence, size_t count)
 pf_status pf_sensitivity(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
                          pf_influence influence[PF_INFLUENCES_MAX], size_t *count)
 {
-    survey on = {.plan = plan, .part = part, .scratch = scratch, .influence = influence};
-    pf_status status = pf_assess(plan, part, scratch, &on.moved);
+    pf_variant personal;
+    pf_part bare;
+    survey on = {.plan = &personal.plan, .part = &bare, .base = plan, .whole = part};
+    on.scratch = scratch;
+    on.influence = influence;
+    *count = 0;
+    pf_status status = pf_variant_personal(&personal, plan, part, &bare);
+    if (status != PF_OK) return status;
+    status = pf_assess(on.plan, &bare, scratch, &on.moved);
     on.margin = on.moved.stress.soa_margin;
     if (status == PF_OK) status = survey_parameters(&on);
     if (status == PF_OK) status = survey_wholes(&on);
     if (status == PF_OK) status = survey_ratings(&on);
+    pf_variant_clear(&personal);
     order(influence, on.count);
     *count = on.count;
     return status;

@@ -1,5 +1,6 @@
 /* variant.c: plans that differ in one parameter. */
 #include "rank/variant.h"
+#include "base/number.h"
 
 #include <string.h>
 
@@ -56,17 +57,19 @@ static pf_status take_waves(pf_variant *variant, size_t at, const pf_slot *from,
     if (open || !waves_depend(from, parameter)) return PF_OK;
     slot->waves = (pf_waves){0};
     variant->owns[at] = true;
-    return pf_plan_starts(&variant->plan.profile, slot, 0, &slot->waves);
+    return pf_plan_starts(&variant->plan.profile, slot,
+                          pf_is_stated(variant->crss_F) ? variant->crss_F : 0, &slot->waves);
 }
 
 pf_status pf_variant_init(pf_variant *variant, const pf_plan *base, const pf_profile *changed,
-                          pf_parameter parameter, const bool concerned[PF_SLOTS_MAX])
+                          pf_parameter parameter, const bool concerned[PF_SLOTS_MAX], double crss_F)
 {
     pf_status status = PF_OK;
     pf_plan *plan = &variant->plan;
     *plan = *base; /* its waves stay the base's until they are made again */
     plan->profile = *changed;
     plan->count = plan->samples = 0;
+    variant->crss_F = crss_F;
     memset(variant->owns, 0, sizeof variant->owns);
     for (size_t i = 0; i < base->count && status == PF_OK; i++) {
         if (!concerned[i]) continue;
@@ -77,6 +80,28 @@ pf_status pf_variant_init(pf_variant *variant, const pf_plan *base, const pf_pro
         pf_corners_init(&slot->corners, changed, slot->event);
         status = take_waves(variant, at, &base->slot[i], parameter);
         if (slot->waves.samples > plan->samples) plan->samples = slot->waves.samples;
+    }
+    if (status != PF_OK) pf_variant_clear(variant);
+    return status;
+}
+
+pf_status pf_variant_personal(pf_variant *variant, const pf_plan *base, const pf_part *part,
+                              pf_part *bare)
+{
+    pf_status status = PF_OK;
+    variant->plan = *base;
+    variant->crss_F = part->crss_F;
+    memset(variant->owns, 0, sizeof variant->owns);
+    *bare = *part;
+    bare->crss_F = PF_NONE;
+    for (size_t i = 0; i < base->count && status == PF_OK; i++) {
+        pf_slot *slot = &variant->plan.slot[i];
+        if (slot->corners.gate_bit < 0 || !pf_is_stated(part->crss_F)) continue;
+        slot->waves = (pf_waves){0};
+        variant->owns[i] = true;
+        status = pf_plan_starts(&base->profile, slot, part->crss_F, &slot->waves);
+        if (slot->waves.samples > variant->plan.samples)
+            variant->plan.samples = slot->waves.samples;
     }
     if (status != PF_OK) pf_variant_clear(variant);
     return status;

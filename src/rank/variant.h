@@ -12,6 +12,7 @@
 
 typedef struct pf_variant {
     pf_plan plan;
+    double crss_F;             /* slows gate ramps that are made again; NaN: none */
     bool owns[PF_SLOTS_MAX];   /* waves made for it */
     size_t base[PF_SLOTS_MAX]; /* slot of the base plan, by own slot */
 } pf_variant;
@@ -20,9 +21,15 @@ typedef struct pf_variant {
 ** where it moves the running junction, the allowed junction or what is required. */
 void pf_variant_concerns(const pf_plan *base, pf_parameter parameter, bool concerned[PF_SLOTS_MAX]);
 
+/* The plan as one part meets it: gate ramps with its C_rss in them, so that no evaluation makes them
+** again. *bare is the part without C_rss, to be evaluated; it shares the part's memory. PF_NO_MEMORY. */
+pf_status pf_variant_personal(pf_variant *variant, const pf_plan *base, const pf_part *part,
+                              pf_part *bare) PF_MUST_USE;
+
 /* The plan of a changed, finished profile with the concerned slots alone. PF_NO_MEMORY. */
 pf_status pf_variant_init(pf_variant *variant, const pf_plan *base, const pf_profile *changed,
-                          pf_parameter parameter, const bool concerned[PF_SLOTS_MAX]) PF_MUST_USE;
+                          pf_parameter parameter, const bool concerned[PF_SLOTS_MAX],
+                          double crss_F) PF_MUST_USE;
 void pf_variant_clear(pf_variant *variant);
 
 /* Whether the card stalls: a start that sticks or outlasts the shortest timer. */

@@ -37,8 +37,10 @@ static void show_derating(const event_sheet *on, const pf_reading *soa, double d
 {
     if (soa->case_degC != 25)
         pf_sheet_note(on->sheet, "SOA of the sheet at a case of %.4g degC.", soa->case_degC);
-    pf_sheet_value(on->sheet, "derating", derating, "", "(# - #) / (# - #)", on->allowed_degC,
-                   on->outcome->start_degC, on->subject->part->tj_max_degC, soa->case_degC);
+    pf_sheet_value(on->sheet, "derating", derating, "",
+                   derating > 0 ? "(# - #) / (# - #)" : "max(0, (# - #) / (# - #))",
+                   on->allowed_degC, on->outcome->start_degC, on->subject->part->tj_max_degC,
+                   soa->case_degC);
 }
 
 static void show_limit(const event_sheet *on, const pf_reading *soa, double derating,
@@ -100,8 +102,7 @@ static void show_retry(const event_sheet *on)
     double earlier = view->train_KpW + view->case_KpW, power = view->vds_V * view->id_A;
     double pulse = view->soa.span_K / (view->vds_V * view->soa.current_A);
     show_rectangle(on);
-    if (!pf_is_stated(outcome->soa_margin) || !(view->hot_rise_K > 0)) return;
-    if (view->soa.kind == PF_READ_NOTHING) return;
+    if (!(outcome->soa_margin > 0) || view->soa.kind == PF_READ_NOTHING) return;
     pf_sheet_value(on->sheet, "Z_SOA of the last pulse", pulse, "K/W", "(# - #) / (# * #)",
                    on->subject->part->tj_max_degC, view->soa.case_degC, view->vds_V,
                    view->soa.current_A);
@@ -201,7 +202,7 @@ static void show_waves(const event_sheet *on)
                    view->voltage_at_peak_V);
     pf_sheet_value(on->sheet, "T_j at its start", outcome->start_degC, "degC", "#",
                    outcome->start_degC);
-    if (!pf_is_stated(outcome->soa_margin)) return;
+    if (!(outcome->soa_margin > 0)) return;
     pf_sheet_value(on->sheet, "dT_hot, by superposition", view->hot_rise_K, "K", "#",
                    view->hot_rise_K);
     if (view->hot_rise_K > 0)

@@ -53,7 +53,7 @@ static void read_line(pf_sheet *sheet, const pf_line_reading *line, double vds_V
     if (flat || line->slope == 0)
         pf_sheet_value(sheet, label, line->current_A, "A", "#", line->current_A);
     else
-        pf_sheet_value(sheet, label, line->current_A, "A", "# * (# / #)^(#)", line->right_A, vds_V,
+        pf_sheet_value(sheet, label, line->current_A, "A", "# * (# / #)^#", line->right_A, vds_V,
                        line->right_V, line->slope);
 }
 
@@ -68,7 +68,7 @@ static void read_between(pf_sheet *sheet, const pf_reading *reading, const char 
         log10(longer->pulse_s / reading->time_s), pf_sheet_words(second, longer->pulse_s, PF_TIME));
     pf_sheet_value(sheet, "slope in time", reading->slope, "", "ln(# / #) / ln(# / #)",
                    longer->current_A, shorter->current_A, longer->pulse_s, shorter->pulse_s);
-    pf_sheet_value(sheet, name, reading->current_A, "A", "# * (# / #)^(#)", longer->current_A,
+    pf_sheet_value(sheet, name, reading->current_A, "A", "# * (# / #)^#", longer->current_A,
                    reading->time_s, longer->pulse_s, reading->slope);
 }
 
@@ -90,7 +90,7 @@ static void read_beyond(pf_sheet *sheet, const pf_reading *reading, const char *
                        "min(0, ln(# / #) / ln(# / #))", longest_A, reading->shorter.current_A,
                        longest_s, reading->shorter.pulse_s);
     pf_sheet_value(sheet, has_dc ? "extended by Zth and slope" : name, extended_A, "A",
-                   "# * min(1, # / #, (# / #)^(#))", longest_A, reading->zth_longest_KpW,
+                   "# * min(1, # / #, (# / #)^#)", longest_A, reading->zth_longest_KpW,
                    reading->zth_KpW, reading->time_s, longest_s, reading->slope);
     if (has_dc)
         pf_sheet_value(sheet, name, reading->current_A, "A", "max(#, min(#, #))", extended_A, dc_A,
@@ -202,6 +202,6 @@ void pf_sheet_zth(pf_sheet *sheet, const pf_part *part, const pf_zth_reading *re
     pf_sheet_note(sheet, "%s lies between the points of Zth at %s and %s.", at, left, right);
     pf_sheet_value(sheet, "slope of Zth", reading->slope, "", "ln(# / #) / ln(# / #)",
                    reading->right_KpW, reading->left_KpW, reading->right_s, reading->left_s);
-    pf_sheet_value(sheet, "Zth", reading->zth_KpW, "K/W", "# * (# / #)^(#)", reading->right_KpW,
+    pf_sheet_value(sheet, "Zth", reading->zth_KpW, "K/W", "# * (# / #)^#", reading->right_KpW,
                    reading->time_s, reading->right_s, reading->slope);
 }

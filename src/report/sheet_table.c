@@ -81,8 +81,9 @@ void pf_sheet_influences(FILE *out, const pf_sheet_subject *subject)
     fprintf(out, "  %-34s%22s%22s\n", "", "10 % less", "10 % more");
     for (size_t i = 0; i < subject->influence_count; i++) {
         const pf_influence *on = &subject->influence[i];
-        bool moves = fabs(on->fall) >= 5e-4 || fabs(on->rise) >= 5e-4 || on->fallen != now ||
-                     on->risen != now;
+        bool known = pf_is_stated(on->fall) || pf_is_stated(on->rise);
+        bool moves = fabs(on->fall) >= 5e-4 || fabs(on->rise) >= 5e-4 ||
+                     (known && (on->fallen != now || on->risen != now));
         silent += !moves;
         if (!moves) continue;
         fprintf(out, "  %-8s %-25s", on->rating ? "rating" : "profile", on->name);
