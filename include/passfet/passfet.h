@@ -8,7 +8,7 @@
 **     ranking, headroom, explain, sensitivity   verdicts, order, and why
 **     intake                       CSV to parts, profiles, captures
 **     store                        the ratings database
-**     report, listing, review      results as text, CSV, JSON
+**     report, listing, review, page   results as text, CSV, JSON, HTML
 **
 ** SI units throughout and temperatures in degC; the unit of a double is the last word of its name. A
 ** number that is not stated or cannot be worked out is NaN. No function reads a clock, a locale or the
@@ -23,6 +23,7 @@
 #include <passfet/headroom.h>
 #include <passfet/intake.h>
 #include <passfet/listing.h>
+#include <passfet/page.h>
 #include <passfet/part.h>
 #include <passfet/plausibility.h>
 #include <passfet/problem.h>

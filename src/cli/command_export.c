@@ -4,10 +4,10 @@
 ** points. They are written under other names first and renamed once all are whole.
 */
 #include "cli/commands.h"
+#include "cli/fresh_file.h"
 #include "cli/selection.h"
 
 #include <errno.h>
-#include <string.h>
 #include <sys/stat.h>
 
 const pf_option pf_export_options[] = {
@@ -17,68 +17,40 @@ const pf_option pf_export_options[] = {
     PF_HELP_OPTION,
 };
 
-#define PATH_ROOM 4096
-
 typedef struct export_run {
     const pf_cli *cli;
     const char *folder;
     pf_drives drives;
-    FILE *file[PF_CSV_COUNT];
+    pf_fresh_file file[PF_CSV_COUNT];
     size_t parts;
 } export_run;
 
-/* ending "" or ".new". False where the path is too long. */
-static bool make_path(char path[PATH_ROOM], const export_run *run, int kind, const char *ending)
-{
-    int length = snprintf(path, PATH_ROOM, "%s/%s%s", run->folder,
-                          pf_ratings_csv_name((pf_ratings_csv)kind), ending);
-    return length > 0 && length < PATH_ROOM;
-}
-
-static int refuse_path(const export_run *run, const char *path)
-{
-    fprintf(run->cli->err, "passfet: %s: %s\n", path, strerror(errno));
-    return PF_EXIT_SYSTEM;
-}
-
 static int open_files(export_run *run)
 {
-    char path[PATH_ROOM] = "";
-    if (mkdir(run->folder, 0777) != 0 && errno != EEXIST) return refuse_path(run, run->folder);
-    for (int kind = 0; kind < PF_CSV_COUNT; kind++) {
-        errno = ENAMETOOLONG;
-        run->file[kind] = make_path(path, run, kind, ".new") ? fopen(path, "w") : NULL;
-        if (!run->file[kind]) return refuse_path(run, path[0] ? path : run->folder);
+    char path[PF_PATH_ROOM];
+    int exit_status = PF_EXIT_DONE;
+    if (mkdir(run->folder, 0777) != 0 && errno != EEXIST)
+        return pf_fail_path(run->cli, run->folder);
+    for (int kind = 0; kind < PF_CSV_COUNT && exit_status == PF_EXIT_DONE; kind++) {
+        snprintf(path, sizeof path, "%s/%s", run->folder,
+                 pf_ratings_csv_name((pf_ratings_csv)kind));
+        exit_status = pf_fresh_open(run->cli, &run->file[kind], path);
     }
-    return PF_EXIT_DONE;
-}
-
-static bool close_file(FILE **file)
-{
-    bool good = *file && !ferror(*file);
-    if (*file && fclose(*file) != 0) good = false;
-    *file = NULL;
-    return good;
+    return exit_status;
 }
 
 /* Closes all, and lets them take their names where all are whole. */
 static int close_files(export_run *run, bool keep)
 {
-    char fresh[PATH_ROOM], path[PATH_ROOM];
     int exit_status = PF_EXIT_DONE;
     for (int kind = 0; kind < PF_CSV_COUNT; kind++) {
-        bool opened = run->file[kind] != NULL;
-        if (close_file(&run->file[kind]) || !opened || !keep) continue;
-        make_path(path, run, kind, ".new");
-        exit_status = refuse_path(run, path);
+        bool whole = pf_fresh_close(&run->file[kind]);
+        if (keep && !whole) exit_status = pf_fail_path(run->cli, run->file[kind].path);
     }
     keep = keep && exit_status == PF_EXIT_DONE;
     for (int kind = 0; kind < PF_CSV_COUNT; kind++) {
-        if (!make_path(fresh, run, kind, ".new") || !make_path(path, run, kind, "")) continue;
-        if (!keep)
-            remove(fresh);
-        else if (rename(fresh, path) != 0)
-            exit_status = refuse_path(run, path);
+        int settled = pf_fresh_settle(run->cli, &run->file[kind], keep);
+        if (exit_status == PF_EXIT_DONE) exit_status = settled;
     }
     return exit_status;
 }
@@ -93,7 +65,8 @@ static pf_status write_part(void *context, const pf_stored_part *stored)
 {
     export_run *run = context;
     for (int kind = 0; kind < PF_CSV_COUNT; kind++)
-        pf_ratings_csv_part(run->file[kind], (pf_ratings_csv)kind, &run->drives, &stored->part);
+        pf_ratings_csv_part(run->file[kind].file, (pf_ratings_csv)kind, &run->drives,
+                            &stored->part);
     run->parts++;
     return PF_OK;
 }
@@ -106,7 +79,7 @@ static pf_status write_files(export_run *run, pf_store *store, const pf_selectio
     if (status != PF_OK) return status;
     status = pf_selection_walk(store, selection, add_drives, run, error);
     for (int kind = 0; kind < PF_CSV_COUNT && status == PF_OK; kind++)
-        pf_ratings_csv_head(run->file[kind], (pf_ratings_csv)kind, &run->drives);
+        pf_ratings_csv_head(run->file[kind].file, (pf_ratings_csv)kind, &run->drives);
     if (status == PF_OK) status = pf_selection_walk(store, selection, write_part, run, error);
     pf_store_read_end(store);
     return status;

@@ -2,6 +2,7 @@
 #include "cli/cards.h"
 #include "cli/commands.h"
 #include "cli/market.h"
+#include "cli/paging.h"
 #include "cli/selection.h"
 
 #include <passfet/ranking.h>
@@ -21,6 +22,8 @@ const pf_option pf_rank_options[] = {
     {"threads", "N", "evaluate on N threads; else on all processors"},
     {"all-corners", NULL, "look at every corner, also those proved never to be the worst"},
     {"format", "FORMAT", "table (the default), csv or json"},
+    {"report", "FILE",
+     "write an HTML page as well, with the SOA of the first parts (--top, else 10)"},
     PF_HELP_OPTION,
 };
 
@@ -31,6 +34,7 @@ typedef struct request {
     size_t key_count;
     size_t top, threads;
     bool all_corners;
+    const char *page; /* --report */
     void (*write)(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
 } request;
 
@@ -64,7 +68,8 @@ static int read_request(const pf_cli *cli, const pf_arguments *arguments, reques
 {
     const char *top = pf_argument(arguments, "top"), *threads = pf_argument(arguments, "threads");
     *on = (request){.threads = pf_processors(),
-                    .all_corners = pf_argument(arguments, "all-corners") != NULL};
+                    .all_corners = pf_argument(arguments, "all-corners") != NULL,
+                    .page = pf_argument(arguments, "report")};
     int exit_status = read_keys(cli, pf_argument(arguments, "sort"), on);
     if (exit_status == PF_EXIT_DONE)
         exit_status = pf_selection_read(cli, arguments, &on->selection);
@@ -87,6 +92,19 @@ static bool any_stall(const pf_cards *cards)
     return false;
 }
 
+static int show(const pf_cli *cli, pf_store *store, const request *on, const pf_cards *cards,
+                const pf_ranking *ranking, const char *revision)
+{
+    const pf_report_source source = {cli->database, revision, on->top};
+    int exit_status = PF_EXIT_DONE;
+    on->write(cli->out, ranking, &source);
+    if (on->page)
+        exit_status =
+            pf_page_write(cli, on->page, store, &on->selection.query, cards, ranking, &source);
+    if (exit_status != PF_EXIT_DONE) return exit_status;
+    return any_stall(cards) || ranking->tally[PF_PASS] == 0 ? PF_EXIT_NO : PF_EXIT_DONE;
+}
+
 static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_cards *cards)
 {
     char revision[PF_REVISION_NAME_ROOM];
@@ -103,12 +121,8 @@ static int rank(const pf_cli *cli, pf_store *store, const request *on, const pf_
                               .progress = isatty(fileno(cli->err)) ? cli->err : NULL};
     pf_ranking_init(&ranking, (const pf_plan *const *)cards->plan, cards->count);
     pf_status status = pf_market_rank(&market, store, cards->plan, &ranking, revision, &error);
-    int exit_status = status == PF_OK ? PF_EXIT_DONE : pf_fail(cli, status, &error);
-    if (status == PF_OK) {
-        const pf_report_source source = {cli->database, revision, on->top};
-        on->write(cli->out, &ranking, &source);
-        if (any_stall(cards) || ranking.tally[PF_PASS] == 0) exit_status = PF_EXIT_NO;
-    }
+    int exit_status = status == PF_OK ? show(cli, store, on, cards, &ranking, revision)
+                                      : pf_fail(cli, status, &error);
     pf_ranking_clear(&ranking);
     return exit_status;
 }

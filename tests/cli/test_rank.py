@@ -1,7 +1,9 @@
 """What rank prints: table, CSV and JSON."""
 import csv
+import html.parser
 import io
 import json
+import re
 import shutil
 import subprocess
 import unicodedata
@@ -243,6 +245,76 @@ class Json(CommandTest):
         self.import_parts({"status": "banned", "status_reason": "burnt two boards"})
         part = self.rank(self.card(), status=1)["parts"][0]
         self.assertEqual(part["verdict"], "fail")
+
+
+class Balanced(html.parser.HTMLParser):
+    """Notes tags that close another one than the last opened, and references to other places."""
+    EMPTY = {"meta", "rect", "line", "circle", "polyline", "br"}
+
+    def __init__(self):
+        super().__init__()
+        self.open, self.faults, self.ids = [], [], []
+
+    def handle_starttag(self, tag, attributes):
+        named = dict(attributes)
+        self.ids += [named["id"]] if "id" in named else []
+        self.faults += [n for n in ("src", "href", "onload", "onclick") if n in named]
+        self.faults += [tag] if tag in ("script", "link", "img", "iframe") else []
+        if tag not in self.EMPTY:
+            self.open.append(tag)
+
+    def handle_endtag(self, tag):
+        if tag not in self.EMPTY and (not self.open or self.open.pop() != tag):
+            self.faults.append(f"/{tag}")
+
+
+class Page(CommandTest):
+    def page(self, *arguments, status=0):
+        self.run_it("rank", *arguments, "--report", "page.html", status=status)
+        text = (self.folder / "page.html").read_text()
+        seen = Balanced()
+        seen.feed(text)
+        self.assertEqual((seen.open, seen.faults), ([], []))
+        self.assertEqual(len(seen.ids), len(set(seen.ids)))
+        self.assertNotIn("url(http", text)
+        self.assertNotIn("nan", re.sub(r"<[^>]*>", "", text).lower().split())
+        return text
+
+    def test_it_is_complete_in_itself_and_well_formed(self):
+        self.import_demo()
+        for card in CARDS:
+            text = self.page(card)
+            self.assertEqual(text.count("<svg") + text.count("no safe operating area."), 10)
+            self.assertIn("not an approval", text)
+        self.page(*CARDS, status=1)
+
+    def test_top_says_how_many_parts_are_shown_in_full(self):
+        self.import_demo()
+        self.assertEqual(self.page(CARD, "--top", "3").count("<svg"), 3)
+
+    def test_it_shows_the_line_widths_and_the_margin(self):
+        self.import_demo()
+        text = self.page(CARD)
+        part = json.loads(self.run_it("rank", CARD, "--format", "json")[0])["parts"][0]
+        self.assertIn(part["part"], text)
+        self.assertIn(f"{part['soa_margin']:.3g}", text)
+        for words in ("DC</text>", "10 us</text>", "-40.5 V .. -57 V"):
+            self.assertIn(words, text)
+
+    def test_foreign_texts_stay_texts(self):
+        self.import_parts({"part": "<b>&\"x", "maker": "<script>"})
+        self.assertIn("&lt;script&gt;", self.page(self.card()))
+
+    def test_a_part_without_soa_says_so(self):
+        self.import_parts({"soa": ""})
+        self.assertIn("states no safe operating area", self.page(self.card(), status=1))
+
+    def test_a_page_that_cannot_be_written_is_4_and_leaves_no_file(self):
+        self.import_demo()
+        self.run_it("rank", CARD, "--report", "no/such/folder/p.html", status=4)
+        (self.folder / "p.html.new").symlink_to("/dev/full")
+        self.run_it("rank", CARD, "--report", "p.html", status=4)
+        self.assertEqual(list(self.folder.glob("p.html*")), [])
 
 
 if __name__ == "__main__":
