@@ -275,6 +275,9 @@ pf_status pf_column_read(pf_slice header, pf_file_kind file, const pf_column_kin
     if (!kind && found.unit.length == 0) kind = match_with_unit(&found, list, count);
     if (!kind) return PF_OK;
     column->kind = *kind;
+    if (file == PF_KIND_SOA_WIDE && kind->role == PF_ROLE_ID && column->condition == 0)
+        return pf_fault_set(fault, "a header such as id_10us or dc",
+                            "a column of currents without a pulse width");
     pf_status status = settle_condition(&found, kind, column, remark, fault);
     return status == PF_OK ? settle_column_unit(&found, kind, column, fault) : status;
 }
