@@ -108,8 +108,7 @@ pf_status pf_part_copy(pf_part *to, const pf_part *from) PF_MUST_USE;
 pf_status pf_part_set_text(pf_part *part, const pf_text_field *field, const char *text) PF_MUST_USE;
 
 /* Keeps rdson sorted by gate drive; the same gate drive again replaces its value. PF_LIMIT when
-*there
-** is no room, PF_BAD_ARGUMENT for values that are not finite and positive. */
+** there is no room, PF_BAD_ARGUMENT for values that are not finite and positive. */
 pf_status pf_part_set_rdson(pf_part *part, double vgs_V, double rdson_ohm) PF_MUST_USE;
 
 /* Replace whole curves; the arrays are copied and sorted (SOA by case, pulse, then voltage, keeping

@@ -1,11 +1,9 @@
 /* plausibility.h: ratings of one part held against each other.
 **
 ** A wrong factor or a column read as another passes every check of a single value; it shows where
-*two
-** ratings that belong together are compared. The same rules serve import (on the part as it will be
+** two ratings that belong together are compared. The same rules serve import (on the part as it will be
 ** stored) and the audit of a database. Sources: conservation of energy (V*I*Zth(t) = T_j,max -
-*T_case
-** where a line of the SOA is a line of constant power), the definitions of the ratings, and common
+** T_case where a line of the SOA is a line of constant power), the definitions of the ratings, and common
 ** practice where marked so in the list.
 */
 #ifndef PASSFET_PLAUSIBILITY_H
@@ -75,8 +73,7 @@ const char *pf_oddity_text(pf_oddity oddity);
 const char *pf_oddity_look(pf_oddity oddity);
 
 /* "the SOA goes on beyond V_DS,max: 120 V and 100 V (1 ms)". Writes at most room bytes, NUL
-*included;
-** returns the whole length as snprintf does. */
+** included; returns the whole length as snprintf does. */
 int pf_finding_print(const pf_finding *finding, char *text, size_t room);
 
 #endif

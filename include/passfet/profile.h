@@ -69,8 +69,7 @@ void pf_profile_init(pf_profile *profile);
 /* Fills the defaults of parallel_count (1), required_margin (1.3) and the uses (0.8, or the rule's;
 ** the smaller where the profile states one and the rule another), takes magnitudes of a
 ** negative supply's voltages, and checks what only the whole can show: what the start control
-*needs,
-** pairs given by half, clamp above supply, retry interval longer than the fault. Every finding is
+** needs, pairs given by half, clamp above supply, retry interval longer than the fault. Every finding is
 ** handed to found(context, parameter or PF_PARAMETER_COUNT, what is wrong, what would be right).
 ** Returns PF_OK or PF_BAD_INPUT. */
 typedef void pf_profile_finding(void *context, pf_parameter parameter, const char *wrong,

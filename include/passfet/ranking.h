@@ -1,8 +1,7 @@
 /* ranking.h: checks, verdict and order.
 **
 ** A part passes when every check is met; it fails when one is not; it is unassessed when none
-*failed
-** and some could not be made. Unassessed ranks below every pass and is never one.
+** failed and some could not be made. Unassessed ranks below every pass and is never one.
 */
 #ifndef PASSFET_RANKING_H
 #define PASSFET_RANKING_H
@@ -65,13 +64,11 @@ pf_status pf_assess_batch(const pf_plan *plan, const pf_part *const *part, size_
                           pf_scratch *scratch, pf_assessment *const *assessment);
 
 /* One check as a sentence: "start_up: SOA margin 0.84, required 1.3", "unassessed: …". Writes at
-*most
-** room bytes, NUL included; returns the whole length as snprintf does. */
+** most room bytes, NUL included; returns the whole length as snprintf does. */
 int pf_check_print(const pf_plan *plan, const pf_check *check, char *text, size_t room);
 
 /* The check that decides: the first that failed, else the first that could not be made, else the
-*one
-** of the limiting event; NULL for none. Borrowed from the assessment. */
+** one of the limiting event; NULL for none. Borrowed from the assessment. */
 const pf_check *pf_assessment_decisive(const pf_assessment *assessment);
 
 /* --- Ranking ------------------------------------------------------------------------------- */
@@ -137,11 +134,14 @@ pf_status pf_ranking_take(pf_ranking *ranking, pf_ranking *other) PF_MUST_USE;
 void pf_ranking_cut(pf_ranking *ranking, size_t top);
 
 /* Orders the rows: pass, unassessed, fail; within each by the keys in turn, then by the default
-*keys
-** (margin, loss, junction), then by part and maker, so that the order never depends on the input's.
+** keys (margin, loss, junction), then by part and maker, so that the order never depends on the input's.
 ** Values that are not stated come last. PF_NO_MEMORY leaves the order as it was. */
 pf_status pf_ranking_sort(pf_ranking *ranking, const pf_sort_key *key,
                           size_t key_count) PF_MUST_USE;
+
+/* Whether no other part of the ranking that passes beats this one, which must pass too, in margin,
+** loss, peak junction temperature and, where it states one, price together. O(rows). */
+bool pf_row_is_unbeaten(const pf_ranking *ranking, size_t place);
 
 /* --- Conditions of --where ----------------------------------------------------------------- */
 

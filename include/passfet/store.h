@@ -1,8 +1,7 @@
 /* store.h: the ratings database of a team: one SQLite file, with history.
 **
 ** What a part states is never overwritten: every act on the database (an import, an undo, a merge,
-*a
-** review) is an entry of its log, numbered from 1; an import that changes a part gives the part a
+** a review) is an entry of its log, numbered from 1; an import that changes a part gives the part a
 ** new revision, numbered per part from 1. docs/database.md describes the tables.
 **
 ** The store reads no clock and asks nobody who is at the keyboard: author and time come in with
@@ -125,8 +124,7 @@ pf_status pf_store_content_hash(pf_store *store, char hash[PF_HASH_ROOM],
                                 pf_error *error) PF_MUST_USE;
 
 /* Name of the state of the database at as_of (NULL: now): number of the last log entry and the
-*first
-** digits of its hash, "17-3f9a2c1b"; "0" for a database without entries. */
+** first digits of its hash, "17-3f9a2c1b"; "0" for a database without entries. */
 #define PF_REVISION_NAME_ROOM 40
 pf_status pf_store_revision_name(pf_store *store, const char *as_of,
                                  char name[PF_REVISION_NAME_ROOM], pf_error *error) PF_MUST_USE;

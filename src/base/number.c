@@ -1,10 +1,8 @@
 /* number.c: doubles to text and back, the same in every locale.
 **
 ** Short numbers, which is to say nearly all of a data sheet, are read exactly with one
-*multiplication
-** or division by a power of ten that a double holds exactly (Clinger 1990, fast path); the rest
-*goes
-** to strtod in the C locale.
+** multiplication or division by a power of ten that a double holds exactly (Clinger 1990, fast path); the rest
+** goes to strtod in the C locale.
 */
 #include "base/number.h"
 #include "base/memory.h"

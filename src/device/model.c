@@ -33,8 +33,7 @@ static size_t curve_end(const pf_part *part, size_t from)
 }
 
 /* One current per voltage. Where a sheet draws a vertical edge at the end of a curve, its upper end
-*is
-** the limit at that voltage and the rest only the voltage rating; elsewhere the smaller counts. */
+** is the limit at that voltage and the rest only the voltage rating; elsewhere the smaller counts. */
 static double current_at(const pf_part *part, size_t from, size_t to, size_t curve_stop)
 {
     double current = part->soa[from].id_A;

@@ -1,8 +1,7 @@
 /* model.h: a part made ready for evaluation: logarithms taken, curves cut at their flank, grouped.
 **
 ** A model borrows the part and owns its logarithms; loading the next part reuses the memory, so
-*that
-** ranking a market allocates only while the largest part so far is met.
+** that ranking a market allocates only while the largest part so far is met.
 */
 #ifndef DEVICE_MODEL_H
 #define DEVICE_MODEL_H

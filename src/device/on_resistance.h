@@ -17,8 +17,7 @@ typedef struct pf_on_resistance {
 } pf_on_resistance;
 
 /* The value stated at the highest rated gate drive that gate_V still reaches; a gate drive between
-*two
-** rated ones gets the lower one's value, never an interpolated one. */
+** two rated ones gets the lower one's value, never an interpolated one. */
 pf_on_resistance pf_on_resistance_at(const pf_part *part, double gate_V);
 
 double pf_on_resistance_hot(const pf_on_resistance *rdson, double junction_degC);

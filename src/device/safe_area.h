@@ -3,12 +3,10 @@
 ** A data sheet draws one curve per pulse width, at one case temperature (a family). The rules for
 ** reading between, beside and beyond the curves never give credit that the sheet does not:
 **  - left of where a curve first reaches its highest current it stays there: what rises to it is
-*the
-**    Rds(on) line, no thermal limit;
+** the    Rds(on) line, no thermal limit;
 **  - right of its last point a curve says nothing (0.5 % are allowed for reading the chart);
 **  - between two pulse widths a power law in time; below the shortest no credit;
-**  - beyond the longest the DC line, Zth and the slope in time bound the current
-*(pf_soa_log_current).
+**  - beyond the longest the DC line, Zth and the slope in time bound the current (pf_soa_log_current).
 */
 #ifndef DEVICE_SAFE_AREA_H
 #define DEVICE_SAFE_AREA_H
@@ -42,8 +40,7 @@ typedef struct pf_soa_column {
 } pf_soa_column;
 
 /* What is beyond the longest finite curve: how Zth grows from there, and whether the profile lets
- *it
- ** be extended without a DC line. */
+** it be extended without a DC line. */
 typedef struct pf_soa_beyond {
     double log_zth_ratio; /* ln (Z(t_m)/Z(t)), <= 0; NaN where no Zth is stated */
     bool extend;
@@ -65,8 +62,7 @@ typedef struct pf_soa_place {
 pf_soa_place pf_soa_place_of(const pf_soa_family *family, double log_time);
 
 /* ln of the current allowed at a place; NaN where the sheet does not say.
-** Equations (4) to (6) of docs/methods.md; interpolation in time as in TI SLUAAO2 and common
-*practice. */
+** Equations (4) to (6) of docs/methods.md; interpolation in time as in TI SLUAAO2 and common practice. */
 double pf_soa_log_current(const pf_soa_column *column, pf_soa_place place, pf_soa_beyond beyond);
 
 /* The longest finite pulse as a logarithm; -infinity where there is none. */

@@ -25,8 +25,7 @@ static inline bool pf_zth_stated(const pf_zth *zth)
 ** fixed grid already have); 0 for time_s <= 0; NaN where no curve is stated.
 ** Points: a power law between two points; below the first as the square root of time (a
 ** semi-infinite solid, Carslaw & Jaeger 1959, section 2.9); beyond the last beyond_KpW. Foster
-*pairs:
-** sum of R (1 - exp(-t/tau)). Equations (2) and (3) of docs/methods.md. */
+** pairs: sum of R (1 - exp(-t/tau)). Equations (2) and (3) of docs/methods.md. */
 double pf_zth_at(const pf_zth *zth, double time_s, double log_time);
 
 /* Where the curve has reached its final value, in s: the last point, or infinity for Foster pairs.

@@ -1,8 +1,7 @@
 /* column.h: what the columns of a ratings file mean.
 **
 ** A header such as `RDS(on) max @ VGS=10V (mOhm)` is a name, a condition and a unit. Names come
-*from
-** fields.def for parts tables and from the lists here for curve files.
+** from fields.def for parts tables and from the lists here for curve files.
 */
 #ifndef INTAKE_COLUMN_H
 #define INTAKE_COLUMN_H
@@ -56,8 +55,7 @@ typedef struct pf_column {
 } pf_column;
 
 /* What a header says. PF_OK (a column that no kind knows: PF_ROLE_IGNORED), or PF_BAD_INPUT with
- *what
- ** is wrong with its unit or condition. *remark gets words about a condition that is not kept, else
+** what is wrong with its unit or condition. *remark gets words about a condition that is not kept, else
  ** NULL. */
 pf_status pf_column_read(pf_slice header, pf_file_kind kind, const pf_column_kind *list,
                          size_t count, pf_column *column, const char **remark, pf_fault *fault);

@@ -30,8 +30,7 @@ pf_status pf_pulse_read(pf_slice text, const pf_value_rule *rule, pf_number_styl
                         double *pulse_s, pf_fault *fault) PF_MUST_USE;
 
 /* `1ms 1:400 10:100 | dc 1:120`: pulse width, then V:A pairs. Points are appended. PF_BAD_INPUT
- *with
- ** the first thing that is wrong. */
+** with the first thing that is wrong. */
 pf_status pf_soa_cell_read(pf_slice text, double case_degC, pf_number_style *style,
                            pf_raw_points *points, pf_fault *fault) PF_MUST_USE;
 

@@ -2,8 +2,7 @@
 **
 ** Only what is safe is repaired, and it is said; the rest is refused. Sorted; exact duplicates
 ** dropped; two currents at one voltage (or two Zth at one time) within 3 % averaged; falls of Zth
-*of
-** up to 2 % raised to a level line. Several currents at the last voltage of an SOA curve are its
+** of up to 2 % raised to a level line. Several currents at the last voltage of an SOA curve are its
 ** vertical edge and stay.
 */
 #ifndef INTAKE_CURVE_REPAIR_H

@@ -46,8 +46,7 @@ typedef struct pf_reader {
 } pf_reader;
 
 /* Adds a problem at a line. PF_OK also for a refusal, so that reading goes on; PF_LIMIT when the
- *file
- ** has had its share. column and text may be NULL. */
+** file has had its share. column and text may be NULL. */
 pf_status pf_reader_report(pf_reader *reader, pf_severity severity, pf_place place,
                            const pf_fault *fault) PF_MUST_USE;
 
@@ -96,8 +95,7 @@ pf_status pf_curves_finish(pf_reader *reader) PF_MUST_USE;
 pf_status pf_curves_spoil(pf_reader *reader, pf_slice name, pf_slice maker) PF_MUST_USE;
 
 /* Repairs the points of one kind of curve and puts them into a change. from names the file's line
- *of
- ** the part; column the curve's, for messages. Faults are reported; *good tells whether there were
+** of the part; column the curve's, for messages. Faults are reported; *good tells whether there were
  ** none. */
 typedef struct pf_curve_place {
     const char *column;

@@ -1,8 +1,7 @@
 /* table.c: the table reader on libcsv.
 **
 ** The text is cut into physical lines first (LF, CRLF or CR), for libcsv drops blank lines without
-*a
-** word and knows no line numbers. A line is fed when it is complete, so that how the input was cut
+** a word and knows no line numbers. A line is fed when it is complete, so that how the input was cut
 ** into pieces cannot matter. Cells gather in one growing text per row; nothing is allocated per row
 ** once the longest row so far has been seen. After a failure nothing is fed or finished any more:
 ** libcsv would deliver half a row and forget that it failed.

@@ -2,8 +2,7 @@
 **
 ** RFC 4180 by libcsv, strict, with what it leaves to its caller: a constant number of columns,
 ** physical line numbers, byte-order mark, `sep=` line, `#` comment lines, blank lines, the
-*delimiter,
-** encoding and limits. The same rows come out for every way of cutting the input into pieces.
+** delimiter, encoding and limits. The same rows come out for every way of cutting the input into pieces.
 ** The measure is how many damaged files are read silently wrong; a strict reader with a constant
 ** column count refuses nearly all of them.
 */
@@ -49,8 +48,7 @@ pf_table *pf_table_new(pf_encoding encoding, pf_table_row *row, void *context);
 void pf_table_free(pf_table *table);
 
 /* Takes the next bytes of the text. PF_BAD_INPUT or PF_LIMIT: see pf_table_fault_of; feeding on
- *after
- ** a failure returns it again. */
+** after a failure returns it again. */
 pf_status pf_table_feed(pf_table *table, const char *bytes, size_t length) PF_MUST_USE;
 
 /* The text has ended. A text without any row is a fault. */

@@ -1,8 +1,7 @@
 /* dot.h: the two loops that ranking a market spends its time in, for every width of vector unit.
 **
 ** Both are written in eight fixed lanes, so that the order of the additions, and with it the
-*result,
-** does not depend on how wide the processor's vectors are. On x86-64 the compiler makes a copy for
+** result, does not depend on how wide the processor's vectors are. On x86-64 the compiler makes a copy for
 ** AVX2 and AVX-512 beside the baseline and the loader picks one; aarch64 has its vectors in the
 ** baseline.
 */

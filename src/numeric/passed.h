@@ -1,8 +1,7 @@
 /* passed.h: how much flow has passed at every level up to a time.
 **
 ** Q_i(t), the flow that has passed up to t counted with the hat function of level i, is all that
-*the
-** weights of a superposition need of a waveform: the mean flow at a level in a window of time is a
+** the weights of a superposition need of a waveform: the mean flow at a level in a window of time is a
 ** difference of it. One more column holds flow times level.
 */
 #ifndef NUMERIC_PASSED_H

@@ -2,8 +2,7 @@
 **
 ** The hash covers every text, rating and curve that is stated, each with its name and in the order
 ** of the names: a rating that is new in fields.def, or a line that moves there, changes no hash of
-*a
-** part that does not state it.
+** a part that does not state it.
 */
 #ifndef STORE_DIGEST_H
 #define STORE_DIGEST_H

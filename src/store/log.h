@@ -1,8 +1,7 @@
 /* log.h: the log of acts on the database, and the chain of hashes over it.
 **
 ** The hash of an entry covers the hash of the one before, what the entry says, its files, its
-*review
-** and every state that it wrote; so nothing earlier can be changed without every later hash.
+** review and every state that it wrote; so nothing earlier can be changed without every later hash.
 */
 #ifndef STORE_LOG_H
 #define STORE_LOG_H

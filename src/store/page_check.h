@@ -3,8 +3,7 @@
 ** SQLite notices only some damage: a flipped bit in a number is another number. Here the last
 ** PF_CHECK_BYTES of every page of the database file, which SQLite leaves free when told to, hold a
 ** checksum of the rest, set on every write and checked on every read. Any SQLite client reads such
-*a
-** file as usual; pages that another program writes are refused afterwards as damaged.
+** a file as usual; pages that another program writes are refused afterwards as damaged.
 ** Cost: about 0.2 ns per byte read or written.
 */
 #ifndef STORE_PAGE_CHECK_H

@@ -1,8 +1,7 @@
 /* statements.c: the SQL that is kept prepared.
 **
 ** `@select` stands for what record.c reads of a part as it is now; `@columns`, `@values` and
-*`@sets`
-** for what state.c binds: every field of fields.def is in all of them.
+** `@sets` for what state.c binds: every field of fields.def is in all of them.
 */
 #include "store/record.h"
 

@@ -7,8 +7,7 @@
 #include <math.h>
 
 /* Z_SOA below this share of Zth: the sheet's two curves contradict each other. Reading a chart
- *costs
- ** some 10 % on either; common practice, no source. */
+** costs some 10 % on either; common practice, no source. */
 #define CLEARLY_BELOW 0.8
 
 pf_subject pf_subject_of(const pf_model *model, double start_degC, bool extend)
@@ -123,8 +122,7 @@ static bool sample_soa(const pf_subject *subject, const pf_kernel *kernel, doubl
 }
 
 /* How far a kink at a pulse width that is no lag lies above the chord between the lags beside it,
-*as a
-** share: what the grid may miss at moments near it. */
+** as a share: what the grid may miss at moments near it. */
 static double kink_share(const pf_kernel *kernel, const double *sample, double pulse_s,
                          double value, double moment)
 {

@@ -1,10 +1,8 @@
 /* response.h: what one stress does to one part: hot-spot rise on Z_SOA, junction rise on Zth.
 **
 ** Z_SOA(V, t) = (T_j,max - T_ref)/(V I_SOA(V, t)) turns the safe operating area into an impedance
-*of
-** its own, hot spots included (equation (7) of docs/methods.md; Spirito et al. for why Zth alone
-*does
-** not know them). V cancels against the power's: the hot-spot rise answers to the current.
+** of its own, hot spots included (equation (7) of docs/methods.md; Spirito et al. for why Zth alone
+** does not know them). V cancels against the power's: the hot-spot rise answers to the current.
 */
 #ifndef STRESS_RESPONSE_H
 #define STRESS_RESPONSE_H
@@ -50,15 +48,12 @@ void pf_respond_waves(const pf_subject *const *subject, size_t count, const pf_w
                       const pf_bench *bench, pf_response *response);
 
 /* A rectangle of vds_V and id_A for time_s: exactly the hand calculation. A longer pulse contains
- *the
- ** shorter ones, so where a sheet allows it more the shorter one's current counts. */
+** the shorter ones, so where a sheet allows it more the shorter one's current counts. */
 void pf_respond_rectangle(const pf_subject *subject, double vds_V, double id_A, double time_s,
                           pf_response *response);
 
 /* Sum over k = 1 .. count - 1 of Zth(on_s + k T) - Zth(k T), in K/W: what earlier tries leave
- *behind
- ** at the end of the last. count may be infinite. NaN without Zth. Equation (18) of
- *docs/methods.md.
+** behind at the end of the last. count may be infinite. NaN without Zth. Equation (18) of docs/methods.md.
  */
 double pf_train_zth(const pf_zth *zth, double on_s, double interval_s, double count);
 

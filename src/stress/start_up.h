@@ -3,10 +3,8 @@
 **     C_out dV_out/dt = I_D - I_load(V_out),   V_DS = V_in - V_out       equation (10)
 **
 ** Neither side knows the time, so the equation is integrated over V_out, not over time: dt = C
-*dV/(I_D -
-** I_load), by three-point Gauss-Legendre quadrature on cells whose ends are the kinks of I_D and
-*I_load.
-** That is exact for a constant current and needs no step control.
+** dV/(I_D - I_load), by three-point Gauss-Legendre quadrature on cells whose ends are the kinks of I_D and
+** I_load. That is exact for a constant current and needs no step control.
 */
 #ifndef STRESS_START_UP_H
 #define STRESS_START_UP_H

@@ -17,8 +17,7 @@ typedef struct pf_steady_state {
 } pf_steady_state;
 
 /* Worst corner: running current, ambient and case-to-ambient resistance at their maximum, gate
- *drive
- ** at its minimum. Equations (12) to (14) of docs/methods.md: the fixed point of T = T_a + R_th I^2
+** drive at its minimum. Equations (12) to (14) of docs/methods.md: the fixed point of T = T_a + R_th I^2
  ** R(T), closed because R(T) is a straight line. */
 pf_steady_state pf_steady_state_of(const pf_profile *profile, const pf_part *part);
 

@@ -25,8 +25,7 @@ static double foster_train(const pf_zth *zth, double on_s, double interval_s, do
 }
 
 /* Tries from the lag from_s on, up to last_s, as a block. Zth bends downwards, so that the mean
- *over
- ** an interval bounds the sum from above: on_s/T (Z(last + on) - Z(from)). */
+** over an interval bounds the sum from above: on_s/T (Z(last + on) - Z(from)). */
 static double train_rest(const pf_zth *zth, double on_s, double interval_s, double from_s,
                          double last_s)
 {
@@ -36,8 +35,7 @@ static double train_rest(const pf_zth *zth, double on_s, double interval_s, doub
 }
 
 /* Where the steady resistance is above the last point, Zth steps up there. A step that falls
- *between
- ** two tries would be lost to the sum: its mean share counts instead. */
+** between two tries would be lost to the sum: its mean share counts instead. */
 static double missed_step(const pf_zth *zth, double on_s, double interval_s, double count)
 {
     double settled_s = pf_zth_settled_s(zth);

@@ -1,9 +1,8 @@
 /* test_cross_junction.c: junction temperature of heat networks, solved in time by GSL
- *(Prince-Dormand
- ** 8(9)), against superposition on Zth.
- **
- ** Foster networks are given as pairs; Cauer ladders, which are what heat does in a body, as points
- ** of their step response. Five random waveforms each.
+** (Prince-Dormand 8(9)), against superposition on Zth.
+**
+** Foster networks are given as pairs; Cauer ladders, which are what heat does in a body, as points
+** of their step response. Five random waveforms each.
  */
 #include "support/bench.h"
 #include "support/near.h"

@@ -1,6 +1,5 @@
 /* test_stress_retry.c: claims about repeated tries into a short: hot spot on Z_SOA for the last
- *try,
- ** Zth for the earlier ones, and the case that warms.
+** try, Zth for the earlier ones, and the case that warms.
  */
 #include "support/bench.h"
 #include "support/near.h"
