@@ -102,7 +102,8 @@ pf_status pf_store_run(pf_store *store, const char *sql, pf_error *error) PF_MUS
 /* Waits for locks of this connection up to store->wait_ms. */
 void pf_store_queue(pf_store *store);
 
-/* A kept statement, reset. Bind all its parameters. */
+/* A kept statement, reset. Bind all its parameters, texts as SQLITE_STATIC: copying one could fail for
+** lack of memory, and what is not bound is NULL, which finds nothing. */
 pf_status pf_store_statement(pf_store *store, pf_statement which, sqlite3_stmt **statement,
                              pf_error *error) PF_MUST_USE;
 

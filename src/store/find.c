@@ -21,7 +21,7 @@ static pf_status collect(pf_store *store, const char *name, const char *maker, s
     bool row;
     pf_status status = pf_store_statement(store, PF_SQL_PARTS_NAMED, &statement, error);
     if (status != PF_OK) return status;
-    sqlite3_bind_text(statement, 1, name, -1, SQLITE_TRANSIENT);
+    sqlite3_bind_text(statement, 1, name, -1, SQLITE_STATIC);
     while ((status = pf_store_step(store, statement, &row, error)) == PF_OK && row) {
         const char *stored = (const char *)sqlite3_column_text(statement, 1);
         bool fits = !maker || (stored && strlen(stored) == maker_length &&

@@ -35,7 +35,7 @@ static pf_status find_key(pf_store *store, const char *key, int64_t *found, pf_e
     *found = 0;
     pf_status status = pf_store_statement(store, PF_SQL_ENTRY_BY_KEY, &statement, error);
     if (status != PF_OK) return status;
-    sqlite3_bind_text(statement, 1, key, -1, SQLITE_TRANSIENT);
+    sqlite3_bind_text(statement, 1, key, -1, SQLITE_STATIC);
     while (status == PF_OK && !*found &&
            (status = pf_store_step(store, statement, &row, error)) == PF_OK && row) {
         int64_t entry = sqlite3_column_int64(statement, 0);
@@ -110,7 +110,7 @@ static pf_status find_candidates(pf_store *store, const char *name, const char *
     *found = (candidate){0};
     pf_status status = pf_store_statement(store, PF_SQL_PARTS_NAMED, &statement, error);
     if (status != PF_OK) return status;
-    sqlite3_bind_text(statement, 1, name, -1, SQLITE_TRANSIENT);
+    sqlite3_bind_text(statement, 1, name, -1, SQLITE_STATIC);
     while ((status = pf_store_step(store, statement, &row, error)) == PF_OK && row)
         weigh(found, statement, maker);
     return status;

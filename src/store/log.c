@@ -47,7 +47,7 @@ pf_status pf_log_head_read(pf_store *store, const char *at, pf_log_head *head, p
     pf_status status =
         pf_store_statement(store, at ? PF_SQL_ENTRY_AT : PF_SQL_LAST_ENTRY, &statement, error);
     if (status != PF_OK) return status;
-    if (at) sqlite3_bind_text(statement, 1, at, -1, SQLITE_TRANSIENT);
+    if (at) sqlite3_bind_text(statement, 1, at, -1, SQLITE_STATIC);
     status = pf_store_step(store, statement, &row, error);
     if (status == PF_OK && row && !read_head(statement, head))
         status = pf_store_damaged(store, error, "an entry of its log says what cannot be");

@@ -24,9 +24,9 @@ static pf_status knew(pf_store *store, const pf_part *part, const unsigned char 
     sqlite3_stmt *statement;
     pf_status status = pf_store_statement(store, PF_SQL_KNEW, &statement, error);
     if (status != PF_OK) return status;
-    sqlite3_bind_text(statement, 1, part->name, -1, SQLITE_TRANSIENT);
-    sqlite3_bind_text(statement, 2, part->maker ? part->maker : "", -1, SQLITE_TRANSIENT);
-    sqlite3_bind_blob(statement, 3, content, PF_DIGEST_BYTES, SQLITE_TRANSIENT);
+    sqlite3_bind_text(statement, 1, part->name, -1, SQLITE_STATIC);
+    sqlite3_bind_text(statement, 2, part->maker ? part->maker : "", -1, SQLITE_STATIC);
+    sqlite3_bind_blob(statement, 3, content, PF_DIGEST_BYTES, SQLITE_STATIC);
     status = pf_store_step(store, statement, known, error);
     sqlite3_reset(statement);
     return status;
@@ -42,8 +42,8 @@ static pf_status find_ours(pf_store *ours, const pf_part *part, pf_target *targe
     *target = (pf_target){0};
     pf_status status = pf_store_statement(ours, PF_SQL_PART_OF_MAKER, &statement, error);
     if (status != PF_OK) return status;
-    sqlite3_bind_text(statement, 1, part->name, -1, SQLITE_TRANSIENT);
-    sqlite3_bind_text(statement, 2, part->maker ? part->maker : "", -1, SQLITE_TRANSIENT);
+    sqlite3_bind_text(statement, 1, part->name, -1, SQLITE_STATIC);
+    sqlite3_bind_text(statement, 2, part->maker ? part->maker : "", -1, SQLITE_STATIC);
     status = pf_store_step(ours, statement, &row, error);
     if (status == PF_OK && row) {
         id = sqlite3_column_int64(statement, 0);
