@@ -6,14 +6,26 @@
 #ifndef PASSFET_REPORT_H
 #define PASSFET_REPORT_H
 
+#include <passfet/headroom.h>
 #include <passfet/ranking.h>
+#include <passfet/trials.h>
 #include <stdio.h>
+
+/* What can be said of a row beside its verdict, under the profile that decides. */
+typedef struct pf_row_review {
+    bool has_window, has_trials;
+    pf_timer_window window;
+    pf_trials_result trials;
+} pf_row_review;
 
 /* What a ranking rests on, for the head of every output. */
 typedef struct pf_report_source {
-    const char *database; /* as the user named it */
-    const char *revision; /* of the database; NULL: not from one */
-    size_t top;           /* rows to show; 0: all */
+    const char *database;        /* as the user named it */
+    const char *revision;        /* of the database; NULL: not from one */
+    size_t top;                  /* rows to show; 0: all */
+    const pf_row_review *review; /* by row, review_count of them; NULL: none */
+    size_t review_count;
+    const pf_trials_request *trials; /* NULL: none were asked for */
 } pf_report_source;
 
 /* A table of at most PF_TABLE_COLUMNS columns: head with the profile's decisive values and the count

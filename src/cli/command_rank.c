@@ -1,8 +1,10 @@
 /* command_rank.c: passfet rank PROFILE… */
+#include "base/memory.h"
 #include "cli/cards.h"
 #include "cli/commands.h"
 #include "cli/market.h"
 #include "cli/paging.h"
+#include "cli/reviewing.h"
 #include "cli/selection.h"
 
 #include <passfet/ranking.h>
@@ -22,6 +24,9 @@ const pf_option pf_rank_options[] = {
     {"threads", "N", "evaluate on N threads; else on all processors"},
     {"all-corners", NULL, "look at every corner, also those proved never to be the worst"},
     {"format", "FORMAT", "table (the default), csv or json"},
+    {"trials", "N", "work each part shown out with N draws of the profile's intervals as well"},
+    {"seed", "S", "which draws; 1 where it is not given"},
+    {"uniform", NULL, "draw evenly between min and max, not by a triangle over min, typ and max"},
     {"report", "FILE",
      "write an HTML page as well, with the SOA of the first parts (--top, else 10)"},
     PF_HELP_OPTION,
@@ -34,7 +39,8 @@ typedef struct request {
     size_t key_count;
     size_t top, threads;
     bool all_corners;
-    const char *page; /* --report */
+    const char *page;         /* --report */
+    pf_trials_request trials; /* count 0: none */
     void (*write)(FILE *out, const pf_ranking *ranking, const pf_report_source *source);
 } request;
 
@@ -80,6 +86,7 @@ static int read_request(const pf_cli *cli, const pf_arguments *arguments, reques
     if (exit_status == PF_EXIT_DONE && threads &&
         !pf_count_read(cli, "threads", threads, 1, &on->threads))
         exit_status = PF_EXIT_USAGE;
+    if (exit_status == PF_EXIT_DONE) exit_status = pf_trials_read(cli, arguments, &on->trials);
     if (on->threads > 256) on->threads = 256;
     on->selection.query.as_stored = true; /* the order is the ranking's */
     return exit_status;
@@ -95,12 +102,18 @@ static bool any_stall(const pf_cards *cards)
 static int show(const pf_cli *cli, pf_store *store, const request *on, const pf_cards *cards,
                 const pf_ranking *ranking, const char *revision)
 {
-    const pf_report_source source = {cli->database, revision, on->top};
-    int exit_status = PF_EXIT_DONE;
-    on->write(cli->out, ranking, &source);
-    if (on->page)
+    pf_report_source source = {.database = cli->database, .revision = revision, .top = on->top};
+    const pf_reviewing reviewing = {.store = store,
+                                    .as_of = on->selection.query.as_of,
+                                    .windows = on->write == pf_report_json || on->page,
+                                    .trials = &on->trials};
+    pf_row_review *review = NULL;
+    int exit_status = pf_rows_review(cli, &reviewing, ranking, &source, &review);
+    if (exit_status == PF_EXIT_DONE) on->write(cli->out, ranking, &source);
+    if (exit_status == PF_EXIT_DONE && on->page)
         exit_status =
             pf_page_write(cli, on->page, store, &on->selection.query, cards, ranking, &source);
+    pf_free(review);
     if (exit_status != PF_EXIT_DONE) return exit_status;
     return any_stall(cards) || ranking->tally[PF_PASS] == 0 ? PF_EXIT_NO : PF_EXIT_DONE;
 }

@@ -2,6 +2,7 @@
 ** `profiles`, and each part a list `cards` with the same keys per profile. */
 #include "report/ranking_json.h"
 #include "report/json.h"
+#include "report/trials.h"
 #include "report/words.h"
 
 #include <passfet/report.h>
@@ -117,7 +118,8 @@ static void write_cards(pf_json *json, const pf_ranking *ranking, const pf_row *
     pf_json_close(json, ']');
 }
 
-static void write_part(pf_json *json, const pf_ranking *ranking, size_t place)
+static void write_part(pf_json *json, const pf_ranking *ranking, size_t place,
+                       const pf_report_source *source)
 {
     const pf_row *row = &ranking->row[place];
     pf_json_open(json, '{');
@@ -129,6 +131,8 @@ static void write_part(pf_json *json, const pf_ranking *ranking, size_t place)
         pf_json_assessment(json, ranking->plan[0], &row->assessment[0]);
     else
         write_cards(json, ranking, row);
+    pf_json_named_bool(json, "unbeaten", pf_row_is_unbeaten(ranking, place));
+    pf_json_row_review(json, source, place);
     pf_json_close(json, '}');
 }
 
@@ -147,7 +151,7 @@ void pf_report_json(FILE *out, const pf_ranking *ranking, const pf_report_source
     pf_json_name(&json, "parts");
     pf_json_open(&json, '[');
     for (size_t i = 0; i < shown; i++)
-        write_part(&json, ranking, i);
+        write_part(&json, ranking, i, source);
     pf_json_close(&json, ']');
     pf_json_name(&json, "cautions");
     pf_json_open(&json, '[');

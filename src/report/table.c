@@ -1,5 +1,6 @@
 /* table.c: a ranking as a table for the terminal, at most PF_TABLE_COLUMNS wide. */
 #include "base/number.h"
+#include "report/trials.h"
 #include "report/words.h"
 
 #include <math.h>
@@ -181,7 +182,9 @@ static void print_row(FILE *out, const pf_ranking *ranking, size_t place, unsign
     const pf_row *row = &ranking->row[place];
     const pf_assessment *deciding = &row->assessment[row->deciding_profile];
     const pf_plan *plan = ranking->plan[row->deciding_profile];
-    fprintf(out, "%*zu", W_RANK, place + 1);
+    char rank[32];
+    snprintf(rank, sizeof rank, "%zu%s", place + 1, pf_row_is_unbeaten(ranking, place) ? "+" : "");
+    fprintf(out, "%*s", W_RANK, rank);
     print_field(out, row->part, W_PART);
     print_field(out, row->maker, W_MAKER);
     print_field(out, row->package, W_PACKAGE);
@@ -222,7 +225,12 @@ void pf_report_table(FILE *out, const pf_ranking *ranking, const pf_report_sourc
     for (size_t i = 0; i < shown; i++)
         print_row(out, ranking, i, common);
     if (shown) fputc('\n', out);
+    if (shown && ranking->row[0].verdict == PF_PASS)
+        fputs(
+            "  +  no other part beats it in margin, loss, peak temperature and price together\n\n",
+            out);
     print_remarks(out, any, common);
+    pf_trials_table(out, ranking, source);
     for (const char *const *line = pf_report_cautions(); *line; line++)
         fprintf(out, "%s\n", *line);
 }
