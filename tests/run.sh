@@ -30,5 +30,6 @@ need_packages $BUILD_NEEDS $TEST_NEEDS
 
 export ASAN_OPTIONS=detect_stack_use_after_return=1
 run_tests build-tests '' -DCMAKE_BUILD_TYPE=Release
+# Warnings do not stop this one: with sanitizers gcc sees paths that are none.
 run_tests build-sanitize '--label-exclude plain_only' -DCMAKE_BUILD_TYPE=Debug \
-    -DCMAKE_C_FLAGS=-O1 -DPF_SANITIZE=address,undefined
+    -DCMAKE_C_FLAGS=-O1 -DPF_SANITIZE=address,undefined -DPF_WERROR=OFF

@@ -47,22 +47,26 @@ typedef struct pf_drives {
 pf_status pf_drives_add(pf_drives *drives, const pf_part *part) PF_MUST_USE;
 void pf_drives_clear(pf_drives *drives);
 
-/* The four files of an export. Values are in SI with as few digits as read back unchanged. */
+/* Values are in SI with as few digits as read back unchanged. */
 typedef enum pf_ratings_csv {
+    /* four files that together hold all */
     PF_CSV_PARTS, /* texts and ratings, no curves */
     PF_CSV_SOA,
     PF_CSV_ZTH,
     PF_CSV_FOSTER,
-    PF_CSV_COUNT
+    /* one table that holds all, curves in cells */
+    PF_CSV_WHOLE
 } pf_ratings_csv;
 
-/* "parts.csv", "soa_points.csv", "zth_points.csv", "foster.csv". */
+#define PF_CSV_FILES PF_CSV_WHOLE /* how many files */
+
+/* "parts.csv", "soa_points.csv", "zth_points.csv", "foster.csv": the names of the four. */
 const char *pf_ratings_csv_name(pf_ratings_csv kind);
 
-/* The header; drives are for PF_CSV_PARTS. */
+/* The header; drives are for PF_CSV_PARTS and PF_CSV_WHOLE. */
 void pf_ratings_csv_head(FILE *out, pf_ratings_csv kind, const pf_drives *drives);
 
-/* The rows of one part: one for PF_CSV_PARTS, one per point or pair for the others. drives must hold
+/* The rows of one part: one in a table of parts, one per point or pair in the others. drives must hold
 ** every gate drive of the part. */
 void pf_ratings_csv_part(FILE *out, pf_ratings_csv kind, const pf_drives *drives,
                          const pf_part *part);

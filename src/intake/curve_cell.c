@@ -1,8 +1,11 @@
 /* curve_cell.c: the grammars of the `soa` and `zth` cells.
 **
-**   soa   = curve { "|" curve }       curve = pulse pair { pair }     pair = volts ":" amperes
-**   zth   = point { point }           point = time ":" kelvin per watt
-** Blanks separate; a pulse width may hold a blank before its unit (`10 ms`).
+**   soa   = curve { "|" curve }       curve = pulse [ "@" case ] pair { pair }
+**                                     pair = volts ":" amperes
+**   zth   = curve { "|" curve }       curve = [ "case" | "ambient" ] point { point }
+**                                           | [ "case" | "ambient" ] "foster" term { term }
+**                                     point = time ":" kelvin per watt, term the other way round
+** Blanks separate; a pulse width may hold a blank before its unit (`10 ms`). A bar at the end is a fault.
 */
 #include "intake/curve_cell.h"
 #include "base/memory.h"
@@ -17,6 +20,9 @@ static const pf_value_rule id_rule = {PF_CURRENT, 0,     1e-9,  50000,
                                       true,       false, false, PF_BOUND_NONE};
 static const pf_value_rule zth_rule = {PF_THERMAL, 0,     1e-6,  2000,
                                        false,      false, false, PF_BOUND_NONE};
+static const pf_value_rule tau_rule = {PF_TIME, 0, 1e-10, 1e6, false, false, false, PF_BOUND_NONE};
+static const pf_value_rule case_rule = {PF_TEMPERATURE, 0,     -60,   300,
+                                        false,          false, false, PF_BOUND_NONE};
 
 pf_status pf_raw_points_add(pf_raw_points *points, pf_raw_point point)
 {
@@ -95,9 +101,26 @@ static pf_status add_point(pf_raw_points *points, pf_raw_point point, pf_fault *
                               : status;
 }
 
-/* The pulse width in front of a curve, with a blank inside or without. */
+/* A case temperature behind an `@`, taken off the piece. */
+static pf_status read_case(pf_slice *piece, pf_number_style *style, double *case_degC,
+                           pf_fault *fault)
+{
+    pf_value value;
+    const char *at = memchr(piece->text, '@', piece->length);
+    if (!at) return PF_OK;
+    size_t length = (size_t)(at - piece->text);
+    pf_slice behind = {at + 1, piece->length - length - 1};
+    pf_status status = pf_value_read(behind, &case_rule, style, &value, fault);
+    if (status == PF_OK && value.value != value.value)
+        status = pf_fault_set(fault, "a case temperature such as 1ms@75", "nothing behind the @");
+    *case_degC = value.value;
+    piece->length = length;
+    return status;
+}
+
+/* The pulse width in front of a curve, with a blank inside or without, and its case temperature. */
 static pf_status read_pulse(pf_slice *rest, pf_number_style *style, double *pulse_s,
-                            pf_fault *fault)
+                            double *case_degC, pf_fault *fault)
 {
     pf_slice piece = next_piece(rest), saved = *rest;
     pf_slice unit = next_piece(rest);
@@ -111,8 +134,10 @@ static pf_status read_pulse(pf_slice *rest, pf_number_style *style, double *puls
                      "a curve without a pulse width");
         return blame(piece, fault);
     }
-    pf_status status = pf_pulse_read(piece, &pulse_rule, style, pulse_s, fault);
-    return status == PF_BAD_INPUT ? blame(piece, fault) : status;
+    pf_slice whole = piece;
+    pf_status status = read_case(&piece, style, case_degC, fault);
+    if (status == PF_OK) status = pf_pulse_read(piece, &pulse_rule, style, pulse_s, fault);
+    return status == PF_BAD_INPUT ? blame(whole, fault) : status;
 }
 
 static pf_status read_curve(pf_slice text, double case_degC, pf_number_style *style,
@@ -122,7 +147,7 @@ static pf_status read_curve(pf_slice text, double case_degC, pf_number_style *st
     pf_slice rest = text, piece;
     pf_value vds, id;
     bool any = false;
-    pf_status status = read_pulse(&rest, style, &pulse_s, fault);
+    pf_status status = read_pulse(&rest, style, &pulse_s, &case_degC, fault);
     if (status != PF_OK) return status;
     while ((piece = next_piece(&rest)).length > 0) {
         status = read_pair(piece, &vds_rule, &id_rule, style, &vds, &id, fault);
@@ -139,33 +164,66 @@ static pf_status read_curve(pf_slice text, double case_degC, pf_number_style *st
                         "a curve without a point");
 }
 
+bool pf_curve_cell_next(pf_slice *text, pf_slice *curve)
+{
+    if (!text->text) return false;
+    const char *bar = memchr(text->text, '|', text->length);
+    size_t length = bar ? (size_t)(bar - text->text) : text->length;
+    *curve = pf_trim((pf_slice){text->text, length});
+    *text = bar ? (pf_slice){bar + 1, text->length - length - 1} : (pf_slice){NULL, 0};
+    return true;
+}
+
+static pf_status refuse_empty(pf_fault *fault)
+{
+    return pf_fault_set(fault, "a curve on both sides of each bar", "an empty curve");
+}
+
 pf_status pf_soa_cell_read(pf_slice text, double case_degC, pf_number_style *style,
                            pf_raw_points *points, pf_fault *fault)
 {
-    for (;;) {
-        const char *bar = memchr(text.text, '|', text.length);
-        size_t length = bar ? (size_t)(bar - text.text) : text.length;
-        pf_slice curve = pf_trim((pf_slice){text.text, length});
-        if (curve.length == 0)
-            return pf_fault_set(fault, "a curve on both sides of each bar", "an empty curve");
+    pf_slice curve;
+    while (pf_curve_cell_next(&text, &curve)) {
+        if (curve.length == 0) return refuse_empty(fault);
         pf_status status = read_curve(curve, case_degC, style, points, fault);
-        if (status != PF_OK || !bar) return status;
-        text = (pf_slice){bar + 1, text.length - length - 1};
-    }
-}
-
-pf_status pf_zth_cell_read(pf_slice text, pf_number_style *style, pf_raw_points *points,
-                           pf_fault *fault)
-{
-    pf_slice piece;
-    pf_value time, zth;
-    while ((piece = next_piece(&text)).length > 0) {
-        pf_status status = read_pair(piece, &pulse_rule, &zth_rule, style, &time, &zth, fault);
-        if (status == PF_BAD_INPUT) return blame(piece, fault);
-        if (status != PF_OK) return status;
-        pf_raw_point point = {0, time.value, 0, zth.value, 0, 0, 0, 0};
-        status = add_point(points, point, fault);
         if (status != PF_OK) return status;
     }
     return PF_OK;
+}
+
+/* Takes a word off the front, if it stands there. */
+static bool take_word(pf_slice *text, const char *word)
+{
+    pf_slice rest = *text, piece = next_piece(&rest);
+    if (!pf_slice_is(piece, word)) return false;
+    *text = rest;
+    return true;
+}
+
+void pf_zth_cell_words(pf_slice *curve, pf_thermal_path *path, bool *foster)
+{
+    if (take_word(curve, "ambient"))
+        *path = PF_JUNCTION_AMBIENT;
+    else if (take_word(curve, "case"))
+        *path = PF_JUNCTION_CASE;
+    *foster = take_word(curve, "foster");
+}
+
+pf_status pf_zth_cell_read(pf_slice text, bool foster, pf_number_style *style,
+                           pf_raw_points *points, pf_fault *fault)
+{
+    pf_slice piece;
+    pf_value left, right;
+    size_t before = points->count;
+    while ((piece = next_piece(&text)).length > 0) {
+        pf_status status = read_pair(piece, foster ? &zth_rule : &pulse_rule,
+                                     foster ? &tau_rule : &zth_rule, style, &left, &right, fault);
+        if (status == PF_BAD_INPUT) return blame(piece, fault);
+        if (status != PF_OK) return status;
+        double time_s = foster ? right.value : left.value, KpW = foster ? left.value : right.value;
+        pf_raw_point point = {0, time_s, 0, KpW, 0, 0, 0, 0};
+        status = add_point(points, point, fault);
+        if (status != PF_OK) return status;
+    }
+    return points->count > before ? PF_OK : refuse_empty(fault);
 }

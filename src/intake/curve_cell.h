@@ -29,13 +29,21 @@ void pf_raw_points_clear(pf_raw_points *points);
 pf_status pf_pulse_read(pf_slice text, const pf_value_rule *rule, pf_number_style *style,
                         double *pulse_s, pf_fault *fault) PF_MUST_USE;
 
-/* `1ms 1:400 10:100 | dc 1:120`: pulse width, then V:A pairs. Points are appended. PF_BAD_INPUT
-** with the first thing that is wrong. */
+/* `1ms 1:400 10:100 | dc 1:120 | 1ms@75 1:250`: pulse width, then V:A pairs; `@` names another case
+** temperature in degC than case_degC. Points are appended. PF_BAD_INPUT with the first thing that is
+** wrong. */
 pf_status pf_soa_cell_read(pf_slice text, double case_degC, pf_number_style *style,
                            pf_raw_points *points, pf_fault *fault) PF_MUST_USE;
 
-/* `10us:0.01 1ms:0.1`: time:K/W pairs. */
-pf_status pf_zth_cell_read(pf_slice text, pf_number_style *style, pf_raw_points *points,
-                           pf_fault *fault) PF_MUST_USE;
+/* What stands between bars of a cell; *text goes on behind the bar. False behind the last. */
+bool pf_curve_cell_next(pf_slice *text, pf_slice *curve);
+
+/* Words in front of a curve of a `zth` cell, taken off: `ambient` or `case` sets *path, `foster` sets
+** *foster. */
+void pf_zth_cell_words(pf_slice *curve, pf_thermal_path *path, bool *foster);
+
+/* `10us:0.01 1ms:0.1`: time:K/W pairs; with foster `0.1:10us`: K/W:time constant. */
+pf_status pf_zth_cell_read(pf_slice text, bool foster, pf_number_style *style,
+                           pf_raw_points *points, pf_fault *fault) PF_MUST_USE;
 
 #endif

@@ -149,37 +149,64 @@ pf_status pf_reader_path(pf_reader *reader, int index, pf_thermal_path *path)
     return pf_reader_refuse_cell(reader, (size_t)index, &fault);
 }
 
+/* Points of one curve of a cell, if they could be read, into the change. */
+static pf_status install(pf_reader *reader, size_t index, parts_row *row, pf_file_kind kind,
+                         pf_thermal_path path, pf_raw_points *points)
+{
+    bool good;
+    char stored[48];
+    pf_curve_place place = {reader->column[index].name, row->shown, reader->row->cell[index].line};
+    for (size_t i = 0; i < points->count; i++)
+        points->item[i].line = (uint32_t)place.line;
+    pf_status status = pf_curve_install(reader, points, kind, path, &place, &row->fresh, &good);
+    snprintf(stored, sizeof stored, "%zu %s", points->count,
+             kind == PF_KIND_FOSTER ? "Foster pairs" : "points");
+    pf_reader_tell_text(reader, row->shown, index, stored);
+    return status;
+}
+
+static pf_status read_soa(pf_reader *reader, size_t index, pf_slice text, parts_row *row)
+{
+    pf_raw_points points = {0};
+    pf_fault fault;
+    pf_status status = pf_soa_cell_read(text, row->soa_case_degC, &reader->style, &points, &fault);
+    if (status == PF_BAD_INPUT)
+        status = pf_reader_refuse_cell(reader, index, &fault);
+    else if (status == PF_OK)
+        status = install(reader, index, row, PF_KIND_SOA, row->path, &points);
+    pf_raw_points_clear(&points);
+    return status;
+}
+
+static pf_status read_zth(pf_reader *reader, size_t index, pf_slice text, parts_row *row)
+{
+    pf_slice curve;
+    pf_fault fault;
+    pf_status status = PF_OK;
+    while (status == PF_OK && pf_curve_cell_next(&text, &curve)) {
+        pf_raw_points points = {0};
+        pf_thermal_path path = row->path;
+        bool foster;
+        pf_zth_cell_words(&curve, &path, &foster);
+        status = pf_zth_cell_read(curve, foster, &reader->style, &points, &fault);
+        if (status == PF_OK)
+            status =
+                install(reader, index, row, foster ? PF_KIND_FOSTER : PF_KIND_ZTH, path, &points);
+        pf_raw_points_clear(&points);
+        if (status == PF_BAD_INPUT) return pf_reader_refuse_cell(reader, index, &fault);
+    }
+    return status;
+}
+
 /* A curve cell; blank states that the curve is not stated. */
 static pf_status read_curve(pf_reader *reader, size_t index, parts_row *row)
 {
-    bool soa = reader->column[index].kind.role == PF_ROLE_SOA_CELL, good;
+    bool soa = reader->column[index].kind.role == PF_ROLE_SOA_CELL;
     pf_slice text = cell_text(reader, index);
-    pf_raw_points points = {0};
-    pf_fault fault;
-    char stored[48];
-    pf_curve_place place = {reader->column[index].name, row->shown, reader->row->cell[index].line};
-    pf_status status = PF_OK;
-    if (pf_not_stated(text)) {
-        if (soa) row->fresh.soa_given = true;
-        if (!soa) row->fresh.thermal_given[row->path] = true;
-        return PF_OK;
-    }
-    if (soa)
-        status = pf_soa_cell_read(text, row->soa_case_degC, &reader->style, &points, &fault);
-    else
-        status = pf_zth_cell_read(text, &reader->style, &points, &fault);
-    for (size_t i = 0; i < points.count; i++)
-        points.item[i].line = (uint32_t)place.line;
-    if (status == PF_BAD_INPUT) {
-        status = pf_reader_refuse_cell(reader, index, &fault);
-    } else if (status == PF_OK) {
-        status = pf_curve_install(reader, &points, soa ? PF_KIND_SOA : PF_KIND_ZTH, row->path,
-                                  &place, &row->fresh, &good);
-        snprintf(stored, sizeof stored, "%zu points", points.count);
-        pf_reader_tell_text(reader, row->shown, index, stored);
-    }
-    pf_raw_points_clear(&points);
-    return status;
+    if (!pf_not_stated(text)) return (soa ? read_soa : read_zth)(reader, index, text, row);
+    if (soa) row->fresh.soa_given = true;
+    if (!soa) row->fresh.thermal_given[row->path] = true;
+    return PF_OK;
 }
 
 static pf_status read_soa_case(pf_reader *reader, int index, parts_row *row)
@@ -268,7 +295,7 @@ static pf_status adopt(pf_reader *reader, pf_part_change *change, pf_part_change
     if (keep_soa) fresh->soa_given = false;
     for (int path = 0; path < PF_PATH_COUNT; path++) {
         const pf_thermal_curve *curve = &fresh->part.thermal[path];
-        if (change->thermal_given[path] && curve->point_count == 0)
+        if (change->thermal_given[path] && curve->point_count + curve->pair_count == 0)
             fresh->thermal_given[path] = false;
     }
     pf_status status = pf_part_apply(&change->part, fresh);
@@ -290,6 +317,16 @@ static pf_status adopt(pf_reader *reader, pf_part_change *change, pf_part_change
     return pf_text_copy(&change->file, reader->file);
 }
 
+static bool same_curve(const pf_thermal_curve *left, const pf_thermal_curve *right)
+{
+    if (left->point_count != right->point_count || left->pair_count != right->pair_count)
+        return false;
+    if (left->point_count)
+        return memcmp(left->point, right->point, left->point_count * sizeof *left->point) == 0;
+    return !left->pair_count ||
+           memcmp(left->pair, right->pair, left->pair_count * sizeof *left->pair) == 0;
+}
+
 /* A curve that a file and a cell of one run both state must be the same in both. */
 static bool curves_clash(const pf_part_change *kept, const pf_part_change *fresh)
 {
@@ -300,9 +337,8 @@ static bool curves_clash(const pf_part_change *kept, const pf_part_change *fresh
                        kept->part.soa_count * sizeof *kept->part.soa) != 0;
     for (int path = 0; path < PF_PATH_COUNT; path++) {
         const pf_thermal_curve *old = &kept->part.thermal[path], *now = &fresh->part.thermal[path];
-        if (!kept->thermal_given[path] || now->point_count == 0) continue;
-        clash |= old->point_count != now->point_count ||
-                 memcmp(old->point, now->point, old->point_count * sizeof *old->point) != 0;
+        if (!kept->thermal_given[path] || now->point_count + now->pair_count == 0) continue;
+        clash |= !same_curve(old, now);
     }
     return clash;
 }

@@ -58,7 +58,7 @@ static double rdson_at(const pf_part *part, double vgs_V)
 
 /* --- Parts --------------------------------------------------------------------------------- */
 
-static void write_parts_head(FILE *out, const pf_drives *drives)
+static void write_parts_head(FILE *out, const pf_drives *drives, bool curves)
 {
     size_t texts, ratings;
     const pf_text_field *text = pf_text_fields(&texts);
@@ -75,10 +75,55 @@ static void write_parts_head(FILE *out, const pf_drives *drives)
         pf_csv_number(out, drives->vgs_V[i]);
         fputs(" V [Ohm]", out);
     }
+    if (curves) fputs(",soa,zth", out);
     end_row(out);
 }
 
-static void write_parts_row(FILE *out, const pf_drives *drives, const pf_part *part)
+/* SOA points as one cell: `0.001s 1:400 10:100 | dc 1:120 | 0.001s@75 1:250`. */
+static void write_soa_cell(FILE *out, const pf_part *part)
+{
+    for (size_t i = 0; i < part->soa_count; i++) {
+        const pf_soa_point *point = &part->soa[i], *before = i ? point - 1 : NULL;
+        if (!before || before->pulse_s != point->pulse_s || before->case_degC != point->case_degC) {
+            fputs(before ? " | " : "", out);
+            pf_csv_number(out, point->pulse_s); /* nothing for the DC line */
+            fputs(point->pulse_s == PF_DC ? "dc" : "s", out);
+            if (point->case_degC != 25) fputc('@', out);
+            if (point->case_degC != 25) pf_csv_number(out, point->case_degC);
+        }
+        fputc(' ', out);
+        pf_csv_number(out, point->vds_V);
+        fputc(':', out);
+        pf_csv_number(out, point->id_A);
+    }
+}
+
+/* Thermal curves as one cell: `case 0.001s:0.1 1s:0.6 | ambient foster 0.1:0.001s`. */
+static void write_zth_cell(FILE *out, const pf_part *part)
+{
+    for (int path = 0; path < PF_PATH_COUNT; path++) {
+        const pf_thermal_curve *curve = &part->thermal[path];
+        const char *mark = path == PF_JUNCTION_AMBIENT ? "ambient" : "case";
+        if (curve->point_count + curve->pair_count == 0) continue;
+        bool second = path > 0 && part->thermal[0].point_count + part->thermal[0].pair_count;
+        fprintf(out, "%s%s%s", second ? " | " : "", mark, curve->pair_count ? " foster" : "");
+        for (size_t i = 0; i < curve->point_count; i++) {
+            fputc(' ', out);
+            pf_csv_number(out, curve->point[i].time_s);
+            fputs("s:", out);
+            pf_csv_number(out, curve->point[i].zth_KpW);
+        }
+        for (size_t i = 0; i < curve->pair_count; i++) {
+            fputc(' ', out);
+            pf_csv_number(out, curve->pair[i].r_KpW);
+            fputc(':', out);
+            pf_csv_number(out, curve->pair[i].tau_s);
+            fputc('s', out);
+        }
+    }
+}
+
+static void write_parts_row(FILE *out, const pf_drives *drives, const pf_part *part, bool curves)
 {
     size_t texts, ratings;
     const pf_text_field *text = pf_text_fields(&texts);
@@ -95,6 +140,12 @@ static void write_parts_row(FILE *out, const pf_drives *drives, const pf_part *p
     for (size_t i = 0; i < drives->count; i++) {
         fputc(',', out);
         pf_csv_number(out, rdson_at(part, drives->vgs_V[i]));
+    }
+    if (curves) {
+        fputc(',', out);
+        write_soa_cell(out, part);
+        fputc(',', out);
+        write_zth_cell(out, part);
     }
     end_row(out);
 }
@@ -173,8 +224,8 @@ void pf_ratings_csv_head(FILE *out, pf_ratings_csv kind, const pf_drives *drives
         "part,maker,time [s],zth [K/W],zth_path\r\n",
         "part,maker,foster_r [K/W],foster_tau [s],zth_path\r\n",
     };
-    if (kind == PF_CSV_PARTS)
-        write_parts_head(out, drives);
+    if (kind == PF_CSV_PARTS || kind == PF_CSV_WHOLE)
+        write_parts_head(out, drives, kind == PF_CSV_WHOLE);
     else
         fputs(head[kind], out);
 }
@@ -184,7 +235,8 @@ void pf_ratings_csv_part(FILE *out, pf_ratings_csv kind, const pf_drives *drives
 {
     switch (kind) {
     case PF_CSV_PARTS:
-        write_parts_row(out, drives, part);
+    case PF_CSV_WHOLE:
+        write_parts_row(out, drives, part, kind == PF_CSV_WHOLE);
         break;
     case PF_CSV_SOA:
         write_soa(out, part);

@@ -17,12 +17,17 @@ class RoundTrip(CommandTest):
         first = self.export("passfet.db", "one")
         self.run_it("--db", "two.db", "import", *options, *[f"one/{name}" for name in FILES])
         self.assertEqual(first, self.export("two.db", "two"))
+        table = self.run_it("export")[0]
+        self.write("table.csv", table)
+        self.run_it("--db", "three.db", "import", *options, "table.csv")
+        self.assertEqual(table, self.run_it("--db", "three.db", "export")[0])
         shown = [self.run_it("--db", base, "parts", "--format", "json")[0].replace(" ", "")
-                 for base in ("passfet.db", "two.db")]
+                 for base in ("passfet.db", "two.db", "three.db")]
         facts = '"revision":', '"entry":', '"time":', '"author":'
         kept = [[line for line in text.splitlines() if not line.startswith(facts)]
                 for text in shown]
-        self.assertEqual(*kept)
+        self.assertEqual(kept[0], kept[1])
+        self.assertEqual(kept[0], kept[2])
 
     def test_the_demo_ratings_come_back_unchanged(self):
         self.import_demo()
@@ -42,10 +47,11 @@ class RoundTrip(CommandTest):
 
     def test_every_form_of_curve_comes_back_unchanged(self):
         self.import_parts({}, {"part": "T2", "zth": "", "soa": ""},
-                          {"part": "T3", "zth_path": "ambient", "soa_case_temperature": "75"})
+                          {"part": "T3", "soa_case_temperature": "75", "zth":
+                           "case foster 0.1:70us 0.4:1ms | ambient 1ms:0.1 1s:2 1000s:40"})
         self.write("soa.csv", "part,pulse,vds [V],id [A],case_temperature [degC]\n"
                    "T2,1ms,1,400,25\nT2,1ms,80,8,25\nT2,1ms,80,4,25\nT2,dc,1,90,25\nT2,dc,80,.5,25\n"
-                   "T2,1ms,1,200,100\nT2,1ms,80,3,100\n")
+                   "T2,1ms,1,200,100\nT2,1ms,80,3,100\nT2,dc,1,80,-20\nT2,dc,80,.4,-20\n")
         self.write("foster.csv", "part,foster_r [K/W],foster_tau [s]\nT2,0.1,0.001\nT2,0.4,0.1\n")
         self.run_it("import", "--accept", "soa.csv", "foster.csv")
         self.assert_comes_back("--accept")

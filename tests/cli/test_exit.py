@@ -93,7 +93,7 @@ class Output(CommandTest):
         return [["rank", CARD], ["rank", CARD, "--format", "json"], ["rank", CARD, "--format", "csv"],
                 ["parts"], ["parts", "--format", "json"], ["parts", "--format", "csv"],
                 ["show", "KB30A8"], ["history", "KB30A8"], ["audit"], ["--help"], ["--version"],
-                ["rank", "--help"], ["import", more], ["export", "out"]]
+                ["rank", "--help"], ["import", more], ["export", "out"], ["export"]]
 
     def test_a_full_disk_is_4(self):
         if not os.path.exists("/dev/full"):
