@@ -55,6 +55,7 @@ const char *pf_event_text(pf_event event);
     X(PF_CAUSE_NO_LIMIT, "the profile states no current limit for it")                             \
     X(PF_CAUSE_NO_AVALANCHE, "no avalanche energy is stated")                                      \
     X(PF_CAUSE_NO_VDS_MAX, "no maximum V_DS is stated")                                            \
+    X(PF_CAUSE_NO_HEADROOM, "V_DS,max is not above the supply voltage")                            \
     X(PF_CAUSE_UNBOUNDED_CURRENT, "the start load draws an unbounded current at zero output")      \
     X(PF_CAUSE_RUNAWAY, "thermal runaway: losses rise faster than they are carried off")           \
     X(PF_CAUSE_HOT_START, "the junction is at its limit before the event begins")

@@ -67,6 +67,18 @@ static void add_jumps(moments *list, const pf_trace *trace)
         if (trace->time[i] == trace->time[i + 1]) add_moment(list, trace->time[i], end);
 }
 
+/* Where flow and power first reach their highest: a limit that takes over leaves a peak there. */
+static void add_highest(moments *list, const pf_trace *trace)
+{
+    size_t flow = 0, power = 0;
+    for (size_t i = 1; i < trace->count; i++) {
+        if (trace->flow[i] > trace->flow[flow]) flow = i;
+        if (trace->flow[i] * trace->level[i] > trace->flow[power] * trace->level[power]) power = i;
+    }
+    add_moment(list, trace->time[flow], duration_of(trace));
+    add_moment(list, trace->time[power], duration_of(trace));
+}
+
 static int by_time(const void *left, const void *right)
 {
     double a = *(const double *)left, b = *(const double *)right;
@@ -83,6 +95,7 @@ static size_t find_moments(const pf_kernel *kernel, pf_kernel_size size, const p
         add_moment(&list, kernel->lag[j], end);
     add_moment(&list, end, end);
     add_jumps(&list, trace);
+    add_highest(&list, trace);
     add_falls(&list, trace, kernel->level[kernel->levels - 1], size.falls);
     for (size_t i = 0; i < size.extra_count; i++)
         add_moment(&list, size.extra[i], end);
@@ -95,7 +108,7 @@ static size_t find_moments(const pf_kernel *kernel, pf_kernel_size size, const p
 
 static size_t moments_most(pf_kernel_size size, const pf_trace *trace)
 {
-    return size.lags + size.falls + size.extra_count + trace->count + 2;
+    return size.lags + size.falls + size.extra_count + trace->count + 4;
 }
 
 /* --- Rows ---------------------------------------------------------------------------------- */

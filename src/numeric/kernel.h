@@ -59,7 +59,7 @@ typedef struct pf_kernel {
 } pf_kernel;
 
 /* The grid. Levels are spaced evenly up to the highest of the traces. Moments looked at are the lags
-** counted from the start, the end, every jump, the times at which the level first falls to so many even
+** counted from the start, the end, every jump, where flow and power are highest, the times at which the level first falls to so many even
 ** parts of the highest, and the extra ones of the caller, counted from the start. */
 typedef struct pf_kernel_size {
     const double *lag;   /* strictly rising from 0 to the longest duration */

@@ -100,6 +100,7 @@ static void check_avalanche(pf_assessment *to, const pf_profile *profile, const 
     if (cause == PF_CAUSE_NONE && !pf_is_stated(part->vds_max_V)) cause = PF_CAUSE_NO_VDS_MAX;
     add_limit(to, PF_CHECK_AVALANCHE, slot, outcome->avalanche_J, outcome->avalanche_limit_J, NULL,
               cause);
+    if (isinf(outcome->avalanche_J)) to->check[to->check_count - 1].cause = PF_CAUSE_NO_HEADROOM;
 }
 
 static void check_event(pf_assessment *to, const pf_plan *plan, const pf_part *part, int slot)
@@ -165,7 +166,7 @@ static int print_made(const pf_check *check, char *text, size_t room)
         return snprintf(text, room, "polarity %s, the card needs %s",
                         pf_polarity_text((pf_polarity)check->value),
                         pf_polarity_text((pf_polarity)check->limit));
-    if (check->cause == PF_CAUSE_RUNAWAY || check->cause == PF_CAUSE_HOT_START)
+    if (check->cause != PF_CAUSE_NONE)
         return snprintf(text, room, "%s: %s", words, pf_cause_text(check->cause));
     pf_value_print(value, check->value, facts[check->kind].quantity, 4);
     pf_value_print(limit, check->limit, facts[check->kind].quantity, 4);

@@ -61,6 +61,8 @@ static void print_rule(FILE *out, const pf_derating *rule)
     if (!rule->name[0]) return;
     fprintf(out, "  Derating by %s%s.\n", rule->name,
             pf_rule_is_from_memory(rule) ? " (quoted from memory: check the standard)" : "");
+    if (rule->power_use == rule->power_use)
+        fputs("  Its power factor is not applied: the SOA margin stands in its place.\n", out);
 }
 
 static void print_card(FILE *out, const pf_plan *plan)
