@@ -91,15 +91,24 @@ static void print_card(FILE *out, const pf_plan *plan)
     fputc('\n', out);
 }
 
+/* On a line of its own: paths are long. */
+static void print_database(FILE *out, const pf_report_source *source)
+{
+    char text[5000];
+    if (!source->revision) return;
+    snprintf(text, sizeof text, "Ratings: %s, revision %s.", source->database, source->revision);
+    pf_wrapped_print(out, text, 0);
+}
+
 static void print_counts(FILE *out, const pf_ranking *ranking, const pf_report_source *source)
 {
     size_t all = ranking->tally[PF_PASS] + ranking->tally[PF_UNASSESSED] + ranking->tally[PF_FAIL];
     fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", all, ranking->tally[PF_PASS],
             ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
-    if (source->revision)
-        fprintf(out, " Ratings: %s, revision %s.", source->database, source->revision);
     if (source->top && source->top < all) fprintf(out, " The first %zu are shown.", source->top);
-    fputs("\n\n", out);
+    fputc('\n', out);
+    print_database(out, source);
+    fputc('\n', out);
 }
 
 static void print_heading(FILE *out)
@@ -184,9 +193,7 @@ static void print_row(FILE *out, const pf_ranking *ranking, size_t place, unsign
     const pf_row *row = &ranking->row[place];
     const pf_assessment *deciding = &row->assessment[row->deciding_profile];
     const pf_plan *plan = ranking->plan[row->deciding_profile];
-    char rank[32];
-    snprintf(rank, sizeof rank, "%zu%s", place + 1, pf_row_is_unbeaten(ranking, place) ? "+" : "");
-    fprintf(out, "%*s", W_RANK, rank);
+    fprintf(out, "%*zu%c", W_RANK - 1, place + 1, pf_row_is_unbeaten(ranking, place) ? '+' : ' ');
     print_field(out, row->part, W_PART);
     print_field(out, row->maker, W_MAKER);
     print_field(out, row->package, W_PACKAGE);
