@@ -1,9 +1,11 @@
-# Tests of the command: python3, one program of claims per file. In tests/cli/support.py: how they run it.
+# Tests of reports and of the command. The latter: python3, one program of claims per file. In tests/cli/support.py: how they run it.
 function(pf_cli_test name)
   add_test(NAME ${name} COMMAND ${Python3_EXECUTABLE} -B ${CMAKE_CURRENT_SOURCE_DIR}/cli/${name}.py
     $<TARGET_FILE:passfet> ${PROJECT_SOURCE_DIR})
   set_tests_properties(${name} PROPERTIES LABELS command TIMEOUT 900)
 endfunction()
+
+pf_test(test_report_text SOURCES unit/test_report_text.c LIBRARIES pf_report m)
 
 find_package(Python3 COMPONENTS Interpreter REQUIRED)
 pf_cli_test(test_exit)

@@ -36,9 +36,13 @@ static bool check_operands(const pf_cli *cli, const pf_command *command, size_t 
 /* Says what is wrong with an option. getopt's own words are switched off: they name argv[0]. */
 static bool refuse(const pf_cli *cli, const pf_command *command, int found, const char *text)
 {
-    fprintf(cli->err, "passfet %s: %s %s; `passfet %s --help` lists the options\n", command->name,
+    fprintf(cli->err, "passfet %s: %s %s; ", command->name,
             found == ':' ? "a value is missing behind" : "no such option, or one too many values:",
-            text, command->name);
+            text);
+    if (strncmp(text, "--db", 4) == 0)
+        fputs("--db FILE stands before the command\n", cli->err);
+    else
+        fprintf(cli->err, "`passfet %s --help` lists the options\n", command->name);
     return false;
 }
 

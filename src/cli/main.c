@@ -3,9 +3,11 @@
 #include "cli/commands.h"
 
 #include <errno.h>
+#include <fcntl.h>
 #include <signal.h>
 #include <stdlib.h>
 #include <string.h>
+#include <unistd.h>
 
 static const pf_command commands[] = {
     {"import", "FILE...",
@@ -114,11 +116,21 @@ static int close_output(const pf_cli *cli, int exit_status)
     return PF_EXIT_SYSTEM;
 }
 
+/* A standard stream that came closed would be given to the first file that is opened, and results would
+** go there. It becomes a file that cannot be written, which close_output then finds. */
+static void fill_closed_streams(void)
+{
+    for (int stream = 0; stream < 3; stream++)
+        if (fcntl(stream, F_GETFD) == -1 && open("/dev/null", O_RDONLY) != stream)
+            _exit(PF_EXIT_SYSTEM);
+}
+
 int main(int argc, char **argv)
 {
     const char *database = getenv("PASSFET_DB");
     pf_cli cli = {database && *database ? database : "passfet.db", stdout, stderr};
     int at;
+    fill_closed_streams();
     signal(SIGPIPE, SIG_IGN); /* a closed pipe then is a failed write, with a message */
     int exit_status = read_globals(&cli, argc, argv, &at);
     if (exit_status < 0) exit_status = run_command(&cli, argc - at, argv + at);

@@ -1,6 +1,7 @@
 """Exit statuses, and where messages go."""
 import os
 import sqlite3
+import subprocess
 
 from support import CommandTest, CARD, PASSFET, RATINGS, main, parts_csv
 
@@ -45,6 +46,10 @@ class ExitStatus(CommandTest):
         _, err = self.run_it("rank", CARD, "--tpo", "3", status=2)
         self.assertIn("--tpo", err)
         self.assertIn("rank --help", err)
+
+    def test_the_database_option_behind_the_command_is_told_where_it_belongs(self):
+        _, err = self.run_it("rank", "--db", "x.db", CARD, status=2)
+        self.assertIn("before the command", err)
 
     def test_bad_input_is_3(self):
         self.import_demo()
@@ -110,6 +115,22 @@ class Output(CommandTest):
             done = self.start(*command, stdout=writer)
             os.close(writer)
             self.assertEqual(done.returncode, 4, command)
+
+    def test_an_output_that_came_closed_is_4_and_no_file_is_written_in_its_place(self):
+        for command in self.commands():
+            command = " ".join(f"'{word}'" for word in [PASSFET, *command])
+            done = subprocess.run(["sh", "-c", command + " >&-"], cwd=self.folder,
+                                  stderr=subprocess.DEVNULL)
+            self.assertEqual(done.returncode, 4, command)
+        self.run_it("audit", status=1)
+
+    def test_a_closed_error_stream_changes_nothing(self):
+        self.import_demo()
+        command = f"'{PASSFET}' rank '{CARD}' --format csv"
+        plain = subprocess.run(["sh", "-c", command], cwd=self.folder, stdout=subprocess.PIPE)
+        closed = subprocess.run(["sh", "-c", command + " 2>&- <&-"], cwd=self.folder,
+                                stdout=subprocess.PIPE)
+        self.assertEqual((plain.returncode, plain.stdout), (closed.returncode, closed.stdout))
 
     def test_export_onto_a_full_disk_is_4_and_leaves_no_file(self):
         self.import_demo()
