@@ -1,9 +1,10 @@
 /* trials.h: tolerance analysis beside the worst case.
 **
 ** Every trial draws one value for each interval of the profile and works the part out with it: the
-** running card, shorts, trip, retry, turn-off and recordings exactly; start-up and supply step from
-** their rises at all corners, by multilinear interpolation of ln rise over the values, raised by the
-** largest shortfall that exact evaluations at PF_TRIALS_EXACT drawn points show. Requirements
+** running card, shorts, trip, retry, turn-off and recordings exactly; start-up from its rises at all
+** corners, by multilinear interpolation of ln rise over the values, raised by the largest shortfall
+** that exact evaluations at PF_TRIALS_EXACT drawn points show; the supply step always at its worst
+** corner, from the start temperature of the draw. Requirements
 ** (required_margin, junction_limit, the uses, clamp, counts) are not drawn. The worst case stays the
 ** verdict; trials only say how far away it is.
 **
@@ -24,7 +25,7 @@ typedef enum pf_distribution {
 
 #define PF_TRIALS_EXACT 16
 
-/* Interval parameters of start-up and supply step that can be drawn at once. */
+/* Interval parameters of start-up that can be drawn at once. */
 #define PF_TRIALS_DIMENSIONS_MAX 9
 
 typedef struct pf_trials_request {

@@ -95,8 +95,8 @@ static void list_gate(const pf_pair *pair)
     add_rating(pair, PF_STAGE_GATE, "crss", NULL);
     list_ramp(pair);
     add_rating(pair, PF_STAGE_GATE, "gate_charge", NULL);
-    pf_difference *time = pf_difference_add(
-        pair, PF_STAGE_GATE, "turn-off time at the same gate current, as gate charge");
+    pf_difference *time =
+        pf_difference_add(pair, PF_STAGE_GATE, "turn-off time at the same gate current");
     time->ratio = pair->candidate->gate_charge_C / pair->reference->gate_charge_C;
     add_rating(pair, PF_STAGE_GATE, "vth_min", NULL);
     add_rating(pair, PF_STAGE_GATE, "vth_max", NULL);

@@ -78,11 +78,14 @@ static bool is_rectangle(pf_event event)
     return event == PF_SHORT_AT_START || event == PF_SHORT_RUNNING || event == PF_TRIP;
 }
 
-/* V and t of a rectangle at the candidate's worst corner. */
+/* V and t of a rectangle at the candidate's worst corner, where it is not known the reference's. */
 static pf_status add_rectangle(const pf_pair *pair, size_t slot)
 {
     pf_event event = pf_plan_event(pair->plan, slot);
-    unsigned corner = pair->result->candidate.stress.outcome[slot].corner;
+    const pf_outcome *old_outcome = &pair->result->reference.stress.outcome[slot];
+    const pf_outcome *new_outcome = &pair->result->candidate.stress.outcome[slot];
+    bool known = pf_is_stated(new_outcome->soa_margin);
+    unsigned corner = known ? new_outcome->corner : old_outcome->corner;
     double vds_V = pf_plan_corner_value(pair->plan, slot, corner, PF_SUPPLY_VOLTAGE);
     double time_s = pf_plan_corner_value(pair->plan, slot, corner,
                                          event == PF_TRIP ? PF_TRIP_TIME : PF_FAULT_TIME);

@@ -154,8 +154,8 @@ static void name_stop(const varying *on, pf_room *room)
             pf_plan_corner_value(&on->variant.plan, slot, room->corner, (pf_parameter)i);
 }
 
-/* What is known of the two sides of a flip. */
-static pf_status describe(varying *on, pf_room *room)
+/* What is known of the failing side of a flip. */
+static pf_status describe_beyond(varying *on, pf_room *room)
 {
     bool valid;
     pf_status status = assess_at(on, room->beyond, &valid);
@@ -163,9 +163,17 @@ static pf_status describe(varying *on, pf_room *room)
     room->there = on->verdict;
     name_stop(on, room);
     pf_variant_clear(&on->variant);
-    status = assess_at(on, room->value, &valid);
+    return PF_OK;
+}
+
+/* Whether the card still starts at the value that was found. */
+static pf_status describe_card(varying *on, pf_room *room)
+{
+    bool valid;
+    if (pf_plan_stall(on->plan) || on->events_only) return PF_OK;
+    pf_status status = assess_at(on, room->value, &valid);
     if (status != PF_OK || !valid) return status;
-    room->stalls = !pf_plan_stall(on->plan) && pf_variant_stalls(&on->variant);
+    room->stalls = pf_variant_stalls(&on->variant);
     pf_variant_clear(&on->variant);
     return PF_OK;
 }
@@ -201,7 +209,8 @@ static pf_status search(varying *on, bool upward, double from, pf_room *room)
     pf_status status = pf_flip_find(&outward, &flip);
     if (status != PF_OK) return status;
     settle(on, &flip, room);
-    return flip.found ? describe(on, room) : PF_OK;
+    if (flip.found) status = describe_beyond(on, room);
+    return status == PF_OK ? describe_card(on, room) : status;
 }
 
 /* Makes what all parameters share; varying_clear ends it where PF_OK. */

@@ -9,19 +9,30 @@
 /* Draws of points within the box come from a sequence of their own. */
 #define SEQUENCE_INSIDE 2
 
-static bool is_start(pf_event event)
+/* The slot of the start, which every plan has. */
+static size_t start_slot(const pf_plan *plan)
 {
-    return event == PF_START_UP || event == PF_SUPPLY_STEP;
+    size_t slot = 0;
+    while (plan->slot[slot].event != PF_START_UP)
+        slot++;
+    return slot;
 }
 
 static bool depends_on(const pf_plan *plan, pf_parameter parameter)
 {
-    for (size_t i = 0; i < plan->count; i++) {
-        const pf_corners *corners = &plan->slot[i].corners;
-        for (size_t k = 0; is_start(plan->slot[i].event) && k < corners->count; k++)
-            if (corners->depend[k].parameter == parameter) return true;
-    }
+    const pf_corners *corners = &plan->slot[start_slot(plan)].corners;
+    for (size_t k = 0; k < corners->count; k++)
+        if (corners->depend[k].parameter == parameter) return true;
     return false;
+}
+
+/* Only the start is wanted, and a step makes no sense with a supply that is drawn. */
+static pf_profile without_step(const pf_profile *profile)
+{
+    pf_profile bare = *profile;
+    bare.stated[PF_SUPPLY_STEP_FROM] = false;
+    bare.value[PF_SUPPLY_STEP_FROM] = (pf_interval){PF_NONE, PF_NONE, PF_NONE};
+    return bare;
 }
 
 static pf_status find_dimensions(pf_box *box, pf_error *error)
@@ -42,7 +53,7 @@ static pf_status find_dimensions(pf_box *box, pf_error *error)
 
 static pf_profile profile_at(const pf_box *box, size_t corner)
 {
-    pf_profile profile = box->base->profile;
+    pf_profile profile = without_step(&box->base->profile);
     for (size_t i = 0; i < box->dimensions; i++) {
         pf_interval *interval = &profile.value[box->parameter[i]];
         double value = corner >> i & 1 ? interval->max : interval->min;
@@ -57,8 +68,8 @@ static pf_status make_inside(pf_box *box, const pf_trials_request *request, pf_e
     pf_status status = PF_OK;
     pf_random_init(&random, request->seed, SEQUENCE_INSIDE);
     for (size_t i = 0; i < PF_TRIALS_EXACT && status == PF_OK && box->dimensions; i++) {
-        pf_profile drawn;
-        pf_draw(&box->base->profile, PF_UNIFORM, &random, &drawn);
+        pf_profile drawn, bare = without_step(&box->base->profile);
+        pf_draw(&bare, PF_UNIFORM, &random, &drawn);
         status = pf_plan_new(&drawn, NULL, 0, &box->inside[i], error);
     }
     return status;
@@ -94,8 +105,7 @@ void pf_box_clear(pf_box *box)
     *box = (pf_box){0};
 }
 
-/* The rises behind an outcome; the start temperature cancels. */
-static pf_rise rise_of(const pf_stress *stress, size_t slot)
+pf_rise pf_rise_of(const pf_stress *stress, size_t slot)
 {
     const pf_outcome *outcome = &stress->outcome[slot];
     pf_rise rise = {PF_NONE, outcome->peak_junction_degC - outcome->start_degC};
@@ -104,14 +114,13 @@ static pf_rise rise_of(const pf_stress *stress, size_t slot)
     return rise;
 }
 
-/* Evaluates a part under a plan of the box: its rises by event. */
-static pf_status rises_under(const pf_surface *surface, const pf_plan *plan, const pf_part *part,
-                             pf_scratch *scratch, pf_rise rise[PF_SURFACE_EVENTS])
+/* Evaluates a part under a plan of the box. */
+static pf_status rise_under(const pf_plan *plan, const pf_part *part, pf_scratch *scratch,
+                            pf_rise *rise)
 {
     pf_stress stress;
     pf_status status = pf_plan_evaluate(plan, part, scratch, &stress);
-    for (size_t i = 0; i < surface->events && status == PF_OK; i++)
-        rise[i] = rise_of(&stress, surface->slot[i]);
+    if (status == PF_OK) *rise = pf_rise_of(&stress, start_slot(plan));
     return status;
 }
 
@@ -119,35 +128,29 @@ static pf_status fill_corners(pf_surface *surface, const pf_part *part, pf_scrat
 {
     pf_status status = PF_OK;
     for (size_t i = 0; i < (size_t)1 << surface->box->dimensions && status == PF_OK; i++) {
-        pf_rise *rise = surface->log_rise + i * PF_SURFACE_EVENTS;
-        status = rises_under(surface, surface->box->corner[i], part, scratch, rise);
-        for (size_t k = 0; k < surface->events; k++)
-            rise[k] = (pf_rise){log(rise[k].hot_K), log(rise[k].junction_K)};
+        pf_rise rise = {PF_NONE, PF_NONE};
+        status = rise_under(surface->box->corner[i], part, scratch, &rise);
+        surface->log_rise[i] = (pf_rise){log(rise.hot_K), log(rise.junction_K)};
     }
     return status;
 }
 
-static double raised(double factor, double exact, double interpolated)
+static double raised(double exact, double interpolated)
 {
-    return exact > factor * interpolated ? exact / interpolated : factor;
+    return exact > interpolated ? exact / interpolated : 1;
 }
 
 static pf_status find_raise(pf_surface *surface, const pf_part *part, pf_scratch *scratch)
 {
     pf_status status = PF_OK;
-    for (size_t k = 0; k < surface->events; k++)
-        surface->raise[k] = (pf_rise){1, 1};
-    for (size_t i = 0; i < PF_TRIALS_EXACT && surface->box->dimensions; i++) {
+    surface->raise = (pf_rise){1, 1};
+    for (size_t i = 0; i < PF_TRIALS_EXACT && surface->box->dimensions && status == PF_OK; i++) {
         const pf_plan *plan = surface->box->inside[i];
-        pf_rise exact[PF_SURFACE_EVENTS], found[PF_SURFACE_EVENTS];
-        status = rises_under(surface, plan, part, scratch, exact);
-        if (status != PF_OK) return status;
-        for (size_t k = 0; k < surface->events; k++) {
-            pf_rise *raise = &surface->raise[k];
-            found[k] = pf_surface_at(surface, k, &plan->profile);
-            raise->hot_K *= raised(1, exact[k].hot_K, found[k].hot_K);
-            raise->junction_K *= raised(1, exact[k].junction_K, found[k].junction_K);
-        }
+        pf_rise exact = {PF_NONE, PF_NONE};
+        status = rise_under(plan, part, scratch, &exact);
+        pf_rise found = pf_surface_at(surface, &plan->profile);
+        surface->raise.hot_K *= raised(exact.hot_K, found.hot_K);
+        surface->raise.junction_K *= raised(exact.junction_K, found.junction_K);
     }
     return status;
 }
@@ -156,10 +159,7 @@ pf_status pf_surface_init(pf_surface *surface, const pf_box *box, const pf_part 
                           pf_scratch *scratch)
 {
     *surface = (pf_surface){.box = box};
-    for (size_t i = 0; i < box->base->count; i++)
-        if (is_start(box->base->slot[i].event)) surface->slot[surface->events++] = i;
-    surface->log_rise =
-        pf_allocate(PF_SURFACE_EVENTS << box->dimensions, sizeof *surface->log_rise);
+    surface->log_rise = pf_allocate((size_t)1 << box->dimensions, sizeof *surface->log_rise);
     if (!surface->log_rise) return PF_NO_MEMORY;
     pf_status status = fill_corners(surface, part, scratch);
     if (status == PF_OK) status = find_raise(surface, part, scratch);
@@ -182,7 +182,7 @@ static double weight_of(const pf_box *box, size_t corner, const double *share)
     return weight;
 }
 
-pf_rise pf_surface_at(const pf_surface *surface, size_t event, const pf_profile *profile)
+pf_rise pf_surface_at(const pf_surface *surface, const pf_profile *profile)
 {
     const pf_box *box = surface->box;
     double share[PF_TRIALS_DIMENSIONS_MAX];
@@ -192,12 +192,12 @@ pf_rise pf_surface_at(const pf_surface *surface, size_t event, const pf_profile 
         share[i] = (profile->value[box->parameter[i]].max - whole->min) / (whole->max - whole->min);
     }
     for (size_t i = 0; i < (size_t)1 << box->dimensions; i++) {
-        const pf_rise *at = &surface->log_rise[i * PF_SURFACE_EVENTS + event];
+        const pf_rise *at = &surface->log_rise[i];
         double weight = weight_of(box, i, share);
         if (weight == 0) continue;
         sum.hot_K += weight * at->hot_K;
         sum.junction_K += weight * at->junction_K;
     }
-    return (pf_rise){surface->raise[event].hot_K * exp(sum.hot_K),
-                     surface->raise[event].junction_K * exp(sum.junction_K)};
+    return (pf_rise){surface->raise.hot_K * exp(sum.hot_K),
+                     surface->raise.junction_K * exp(sum.junction_K)};
 }

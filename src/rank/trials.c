@@ -96,20 +96,36 @@ static pf_verdict fixed_verdict(const run *on, size_t slot)
     return PF_PASS;
 }
 
-/* A start under a draw: its margin, and its verdict taken into *verdict. */
-static double start_margin(const run *on, size_t event, const pf_profile *drawn,
-                           pf_verdict *verdict)
+/* An event that is not in the plan of a draw: its margin from its rises, and its verdict taken into
+** *verdict. */
+static double margin_from(const run *on, size_t slot, pf_rise rise, const pf_profile *drawn,
+                          pf_verdict *verdict)
 {
     const pf_stress *stress = &on->assessment.stress;
-    size_t slot = on->surface.slot[event];
-    bool cold = drawn->start_from_ambient && on->trials->box.base->slot[slot].event == PF_START_UP;
-    double start_degC = cold ? drawn->value[PF_AMBIENT_TEMPERATURE].max : stress->running_degC;
-    pf_rise rise = pf_surface_at(&on->surface, event, drawn);
+    bool start = on->trials->box.base->slot[slot].event == PF_START_UP;
+    double start_degC = start && drawn->start_from_ambient
+                            ? drawn->value[PF_AMBIENT_TEMPERATURE].max
+                            : stress->running_degC;
     double room = stress->allowed_degC - start_degC;
     double margin = room <= 0 ? 0 : room / rise.hot_K;
     *verdict = worse(*verdict, judged(drawn->value[PF_REQUIRED_MARGIN].max, margin));
     *verdict = worse(*verdict, judged(start_degC + rise.junction_K, stress->allowed_degC));
     *verdict = worse(*verdict, fixed_verdict(on, slot));
+    return margin;
+}
+
+/* Start and supply step; the step at its worst corner always, for its supply is never drawn. */
+static double starts_margin(const run *on, const pf_profile *drawn, pf_verdict *verdict)
+{
+    const pf_plan *base = on->trials->box.base;
+    double margin = PF_NONE;
+    for (size_t slot = 0; slot < base->count; slot++) {
+        bool start = base->slot[slot].event == PF_START_UP;
+        if (!start && base->slot[slot].event != PF_SUPPLY_STEP) continue;
+        pf_rise rise =
+            start ? pf_surface_at(&on->surface, drawn) : pf_rise_of(&on->worst.stress, slot);
+        margin = fmin(margin, margin_from(on, slot, rise, drawn, verdict));
+    }
     return margin;
 }
 
@@ -119,9 +135,7 @@ static pf_status try_once(run *on, const pf_profile *drawn, pf_verdict *verdict,
     pf_status status = pf_assess(&on->plan, on->part, on->scratch, &on->assessment);
     if (status != PF_OK) return status;
     *verdict = on->assessment.verdict;
-    *margin = on->assessment.stress.soa_margin;
-    for (size_t i = 0; i < on->surface.events; i++)
-        *margin = fmin(*margin, start_margin(on, i, drawn, verdict));
+    *margin = fmin(on->assessment.stress.soa_margin, starts_margin(on, drawn, verdict));
     return PF_OK;
 }
 
@@ -185,8 +199,7 @@ static pf_status run_trials(run *on, pf_trials_result *result)
     for (size_t i = 0; i < trials->kept_count; i++)
         on->plan.slot[i] = trials->box.base->slot[trials->kept[i]];
     status = margin ? try_all(on, margin, result) : PF_NO_MEMORY;
-    for (size_t i = 0; i < on->surface.events; i++)
-        result->raised_by = fmax(result->raised_by, on->surface.raise[i].hot_K - 1);
+    result->raised_by = on->surface.raise.hot_K - 1;
     pf_free(margin);
     pf_surface_clear(&on->surface);
     return status;

@@ -70,7 +70,7 @@ static void print_change(char text[PF_DIFFERENCE_ROOM + 40], const pf_difference
     bool stated = pf_is_stated(of->reference) && pf_is_stated(of->candidate);
     text[0] = '\0';
     if (of->why)
-        snprintf(text, PF_DIFFERENCE_ROOM + 40, "not comparable: %s", of->why);
+        snprintf(text, PF_DIFFERENCE_ROOM + 40, "not comparable");
     else if (of->reference_text[0])
         snprintf(text, PF_DIFFERENCE_ROOM + 40, "%s", of->flagged ? "differs" : "");
     else if (of->quantity == PF_TEMPERATURE && stated)
@@ -94,6 +94,13 @@ static void show_difference(FILE *out, const pf_difference *of)
         snprintf(reference, sizeof reference, "%s", of->reference_text);
         snprintf(candidate, sizeof candidate, "%s", of->candidate_text);
     }
+    if (pf_text_width(reference) > 13 || pf_text_width(candidate) > 13) {
+        char line[3 * PF_DIFFERENCE_ROOM + 2 * PF_UNIT_ROOM];
+        snprintf(line, sizeof line, "%s: reference %s; candidate %s", of->name, reference,
+                 candidate);
+        pf_wrapped_print(out, line, 4);
+        return;
+    }
     print_change(change, of);
     fputs("    ", out);
     pf_text_field_print(out, of->name, 44, false);
@@ -102,6 +109,7 @@ static void show_difference(FILE *out, const pf_difference *of)
     fputc(' ', out);
     pf_text_field_print(out, candidate, 13, true);
     fprintf(out, "%s%s\n", change[0] ? "  " : "", change);
+    if (of->why) fprintf(out, "        (%s)\n", of->why);
 }
 
 static void show_differences(FILE *out, const pf_exchange *exchange)

@@ -64,8 +64,8 @@ static void print_end(FILE *out, const pf_plan *plan, const pf_room *room)
     const char *way = room->upward ? "up" : "down",
                *sign = room->here == PF_PASS ? "passes" : "does not pass";
     if (room->kind == PF_ROOM_NEVER)
-        snprintf(line, sizeof line, "%s: never flips the verdict; the part %s %s to %s", name, sign,
-                 way, bound);
+        snprintf(line, sizeof line, "%s: never flips the verdict; the part %s %s to %s%s", name,
+                 sign, way, bound, room->stalls ? ", where the card itself no longer starts" : "");
     else
         snprintf(line, sizeof line,
                  "%s: the part %s %s to %s, beyond which the profile makes no "
