@@ -123,7 +123,7 @@ static void check_start_load(findings *list, const pf_profile *profile)
 {
     bool load = profile->stated[PF_START_LOAD_CURRENT] ||
                 profile->stated[PF_START_LOAD_RESISTANCE] || profile->stated[PF_START_LOAD_POWER];
-    if (profile->stated[PF_START_LOAD_ABOVE] && !load)
+    if (profile->value[PF_START_LOAD_ABOVE].max > 0 && !load)
         report(list, PF_START_LOAD_ABOVE, "start_load_above is given without a start load",
                "start_load_current, start_load_resistance or start_load_power beside it");
 }
