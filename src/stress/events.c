@@ -183,7 +183,7 @@ static void take_waves(trial *const *test, size_t count, const pf_waves *waves,
                        const pf_bench *bench)
 {
     pf_response response[PF_LANES];
-    const pf_subject *subject[PF_LANES];
+    const pf_subject *subject[PF_LANES] = {NULL};
     for (size_t i = 0; i < count; i++)
         subject[i] = &test[i]->subject;
     pf_respond_waves(subject, count, waves, bench, response);
