@@ -64,8 +64,7 @@ static bool decides(const pf_assessment *left, const pf_assessment *right)
 }
 
 /* The row's own numbers: the worst over its profiles. A loss or temperature that one card leaves
-*open
-** stays open: the worst is not known then. */
+** open stays open: the worst is not known then. */
 static void summarise(pf_row *row, size_t profile_count)
 {
     row->soa_margin = row->conduction_loss_W = row->running_degC = row->peak_junction_degC =

@@ -95,7 +95,7 @@ static void show_difference(FILE *out, const pf_difference *of)
         snprintf(candidate, sizeof candidate, "%s", of->candidate_text);
     }
     if (pf_text_width(reference) > 13 || pf_text_width(candidate) > 13) {
-        char line[3 * PF_DIFFERENCE_ROOM + 2 * PF_UNIT_ROOM];
+        char line[4 * PF_DIFFERENCE_ROOM + 2 * PF_UNIT_ROOM];
         snprintf(line, sizeof line, "%s: reference %s; candidate %s", of->name, reference,
                  candidate);
         pf_wrapped_print(out, line, 4);

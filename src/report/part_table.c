@@ -46,7 +46,7 @@ static void print_number(FILE *out, double value, size_t width)
 /* Rds(on) at the highest rated gate drive. */
 static void print_rdson(FILE *out, const pf_part *part)
 {
-    char ohm[PF_NUMBER_ROOM] = "", drive[PF_NUMBER_ROOM], text[2 * PF_NUMBER_ROOM] = "";
+    char ohm[PF_NUMBER_ROOM] = "", drive[PF_NUMBER_ROOM], text[2 * PF_NUMBER_ROOM + 8] = "";
     if (part->rdson_count) {
         const pf_rdson_point *point = &part->rdson[part->rdson_count - 1];
         pf_number_print(ohm, point->rdson_ohm * 1000, 4);
