@@ -121,7 +121,10 @@ static pf_status check_states(check *on, const char *table, const char *id, pf_e
             find(on, "row: %s", wrong.text);
         else if (status == PF_OK)
             status = check_state(on, &extra, error);
-        if (status == PF_DATABASE && wrong.status) status = PF_OK;
+        if (status == PF_DATABASE && wrong.status)
+            status = PF_OK;
+        else if (wrong.status)
+            pf_error_set(error, status, "%s", wrong.text);
     }
     sqlite3_finalize(statement);
     return status;
