@@ -79,7 +79,6 @@ static pf_status read_text(pf_reader *reader, size_t index, parts_row *row)
     row->fresh.texts_given |= bit(place);
     pf_status status = PF_OK;
     if (pf_not_stated(text)) return PF_OK;
-    text = pf_undefused(text);
     if (strcmp(field->csv, "status") == 0) status = settle_status(reader, index, &text);
     if (status != PF_OK || reader->row_refused) return status;
     status = pf_text_copy_n(pf_part_text(&row->fresh.part, field), text.text, text.length);

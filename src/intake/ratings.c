@@ -138,7 +138,7 @@ static pf_status read_name(pf_reader *reader, int index, bool required, pf_slice
                      "a name with a line break, a control character or no end");
         return pf_reader_refuse_cell(reader, (size_t)index, &fault);
     }
-    *name = pf_undefused(text);
+    *name = text;
     return PF_OK;
 }
 
@@ -242,10 +242,33 @@ static pf_status take_data(pf_reader *reader)
     return status;
 }
 
+/* The row with the marks against formulas taken off; most rows have none and are not copied. */
+static pf_status take_marks_off(pf_reader *reader, const pf_row *row)
+{
+    bool marked = false;
+    reader->row = row;
+    for (size_t i = 0; i < row->count; i++)
+        marked |= row->cell[i].text[0] == '\'';
+    if (!marked) return PF_OK;
+    pf_status status = pf_grow((void **)&reader->plain_cell, &reader->plain_room, row->count,
+                               sizeof *reader->plain_cell);
+    if (status != PF_OK) return status;
+    for (size_t i = 0; i < row->count; i++) {
+        pf_slice text = pf_undefused((pf_slice){row->cell[i].text, row->cell[i].length});
+        reader->plain_cell[i] = (pf_cell){text.text, text.length, row->cell[i].line};
+    }
+    reader->plain_row = *row;
+    reader->plain_row.cell = reader->plain_cell;
+    reader->row = &reader->plain_row;
+    return PF_OK;
+}
+
 static pf_status on_row(void *context, const pf_row *row)
 {
     pf_reader *reader = context;
-    reader->row = row;
+    pf_status marks = take_marks_off(reader, row);
+    if (marks != PF_OK) return marks;
+    row = reader->row;
     if (row->header) {
         reader->style.delimiter = pf_table_delimiter(reader->table);
         reader->header_line = row->line;
@@ -290,6 +313,7 @@ static void reader_clear(pf_reader *reader)
     pf_column_map_free(reader->map);
     pf_free(reader->column);
     pf_free(reader->header_text);
+    pf_free(reader->plain_cell);
 }
 
 static pf_status feed(void *context, const char *bytes, size_t length)

@@ -41,6 +41,9 @@ typedef struct pf_reader {
 
     /* of the row at hand */
     const pf_row *row;
+    pf_row plain_row; /* a copy without the marks against formulas, where it had some */
+    pf_cell *plain_cell;
+    size_t plain_room;
     bool row_refused;
     char reason[400]; /* first refusal of the row, for the bad rows' file */
 } pf_reader;

@@ -131,6 +131,18 @@ class Import(CommandTest):
         self.assertNotIn("T1", bad)
         self.run_it("show", "T1")
 
+    def test_the_file_of_bad_rows_can_be_put_right_and_imported(self):
+        text = parts_csv({"note": "", "tj_max [degC]": "17x"},
+                         {"part": "T2", "polarity": "P", "vds_max [V]": "-100 V", "note": "=1+1",
+                          "tj_max [degC]": "17x"}, {"part": "T3", "polarity": "Q"})
+        self.run_it("import", self.write("p.csv", text), "--keep-good", "bad.csv", status=3)
+        bad = (self.folder / "bad.csv").read_text()
+        self.assertNotRegex(bad, r'(^|,)"?[=+-]')
+        right = bad.replace("17x", "175").replace(",Q,", ",N,")
+        self.run_it("import", self.write("right.csv", right))
+        self.assertIn("100 V", self.run_it("show", "T2")[0])
+        self.assertIn(" =1+1", self.run_it("show", "T2")[0])
+
     def test_a_map_and_decimal_commas_are_taken(self):
         self.write("map.csv", "theirs,ours\nSachnummer,part\nKanal,polarity\nUds,vds_max [V]\n"
                    "Tj,tj_max [degC]\n")
