@@ -103,8 +103,8 @@ static void print_database(FILE *out, const pf_report_source *source)
 static void print_counts(FILE *out, const pf_ranking *ranking, const pf_report_source *source)
 {
     size_t all = ranking->tally[PF_PASS] + ranking->tally[PF_UNASSESSED] + ranking->tally[PF_FAIL];
-    fprintf(out, "%zu parts: %zu pass, %zu unassessed, %zu fail.", all, ranking->tally[PF_PASS],
-            ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
+    fprintf(out, "%zu part%s: %zu pass, %zu unassessed, %zu fail.", all, all == 1 ? "" : "s",
+            ranking->tally[PF_PASS], ranking->tally[PF_UNASSESSED], ranking->tally[PF_FAIL]);
     if (source->top && source->top < all) fprintf(out, " The first %zu are shown.", source->top);
     fputc('\n', out);
     print_database(out, source);

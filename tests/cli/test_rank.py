@@ -68,7 +68,7 @@ class Table(CommandTest):
     def test_a_stall_stands_at_the_head_with_its_numbers(self):
         self.import_parts({})
         out = self.table(self.card(start_load_current=",6,,A"), status=1)
-        self.assertLess(out.index("THE CARD DOES NOT START"), out.index("1 parts:"))
+        self.assertLess(out.index("THE CARD DOES NOT START"), out.index("1 part:"))
 
     def test_the_cautions_are_at_the_foot(self):
         self.import_demo()
