@@ -8,7 +8,7 @@ pf_test(test_review_capture SOURCES unit/test_review_capture.c LIBRARIES ${PHYSI
 find_package(Python3 COMPONENTS Interpreter REQUIRED)
 set(DEMO ${PROJECT_SOURCE_DIR}/data/demo)
 pf_test(test_review_demo SOURCES unit/test_review_demo.c LIBRARIES pf_intake pf_rank
-  ARGUMENTS ${DEMO} ${PROJECT_SOURCE_DIR}/data/derating.csv)
+  ARGUMENTS ${DEMO} ${PROJECT_SOURCE_DIR}/data/derating.csv 11)
 add_test(NAME explain_recompute COMMAND ${Python3_EXECUTABLE}
   ${CMAKE_CURRENT_SOURCE_DIR}/cli/explain_recompute.py $<TARGET_FILE:passfet> ${DEMO})
 add_test(NAME compare_verdicts COMMAND ${Python3_EXECUTABLE}

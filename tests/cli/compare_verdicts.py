@@ -77,7 +77,7 @@ def check_compare(b):
 
 
 def check_headroom(b):
-    card = b.card("twelve", 12, 1e-4, 5e-3)
+    card = b.card("fortyeight", 48, 1e-4, 5e-3)
     rooms = json.loads(b.run(0, "headroom", "A", card, "--format", "json").stdout)["headroom"]
     solved = json.loads(b.run(0, "headroom", card, "--solve", "fault_time", "--format",
                               "json").stdout)["parts"]
@@ -85,7 +85,7 @@ def check_headroom(b):
     same = [p for p in solved if p["part"] == "A"][0]
     assert abs(alone["value"] / same["value"] - 1) < 1e-5, (alone, same)
     for value, verdict in ((same["value"], "pass"), (same["beyond"], "fail")):
-        put_in = b.card("put_in", 12, 1e-4, 1)
+        put_in = b.card("put_in", 48, 1e-4, 1)
         with open(put_in) as file:
             text = file.read().replace("fault_time,,1,", "fault_time,,%r," % value)
         with open(put_in, "w") as file:

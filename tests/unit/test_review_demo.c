@@ -1,6 +1,8 @@
-/* test_review_demo.c: headroom of every demo part on every demo card, put back into the profile.
+/* test_review_demo.c: headroom of demo parts on every demo card, put back into the profile.
 **
-** usage: test_review_demo DEMO_FOLDER DERATING_FILE
+** usage: test_review_demo DEMO_FOLDER DERATING_FILE STRIDE
+**
+** STRIDE 1 takes every part and some minutes; n takes every n-th, another set for each card.
 */
 #include "support/claims.h"
 #include "support/near.h"
@@ -8,8 +10,10 @@
 #include <passfet/headroom.h>
 #include <passfet/intake.h>
 #include <stdio.h>
+#include <stdlib.h>
 
 static const char *demo, *derating;
+static size_t stride;
 
 static const char *path_of(char text[1024], const char *name)
 {
@@ -71,8 +75,10 @@ static void check_flip(const pf_profile *profile, const pf_part *part, pf_scratc
         fail_msg("%s on %s: %s %s at %.9g, %s at %.9g", part->name, profile->name,
                  pf_parameter_facts()[parameter].name, pf_verdict_text(here), room->value,
                  pf_verdict_text(there), room->beyond);
-    bool whole = parameter == PF_PARALLEL_COUNT || parameter == PF_RETRY_COUNT;
-    if (whole || there != PF_FAIL || room->stop.kind != PF_CHECK_SOA_MARGIN) return;
+    /* whole numbers, and a gate drive that no longer reaches a rated one, step over the margin */
+    bool steps =
+        parameter == PF_PARALLEL_COUNT || parameter == PF_RETRY_COUNT || parameter == PF_GATE_DRIVE;
+    if (steps || there != PF_FAIL || room->stop.kind != PF_CHECK_SOA_MARGIN) return;
     if (parameter == PF_REQUIRED_MARGIN) required = room->value;
     if (!is_near(inside, required, 0.001))
         fail_msg("%s on %s: %s at %.9g gives %.6g, required %.6g", part->name, profile->name,
@@ -93,7 +99,7 @@ static size_t check_part(const pf_profile *profile, const pf_plan *plan, const p
     return flips;
 }
 
-static size_t check_card(const char *name, const pf_changes *changes)
+static size_t check_card(const char *name, const pf_changes *changes, size_t first)
 {
     pf_profile profile;
     pf_plan *plan;
@@ -101,7 +107,7 @@ static size_t check_card(const char *name, const pf_changes *changes)
     pf_scratch *scratch = pf_scratch_new();
     read_card(name, &profile);
     assert_int_equal(pf_plan_new(&profile, NULL, 0, &plan, NULL), PF_OK);
-    for (size_t i = 0; i < changes->count; i++) {
+    for (size_t i = first % stride; i < changes->count; i += stride) {
         pf_part part;
         pf_part_init(&part);
         assert_int_equal(pf_part_apply(&part, &changes->item[i]), PF_OK);
@@ -123,9 +129,9 @@ static void test_every_value_gives_the_required_margin_and_beyond_it_none_passes
     read_parts(&changes);
     assert_int_equal(changes.count, 44);
     for (size_t i = 0; i < 3; i++)
-        flips += check_card(card[i], &changes);
-    print_message("%zu flips of 44 parts on 3 cards hold\n", flips);
-    assert_true(flips > 300);
+        flips += check_card(card[i], &changes, i);
+    print_message("%zu flips hold\n", flips);
+    assert_true(flips > 300 / stride);
     pf_changes_clear(&changes);
 }
 
@@ -134,8 +140,10 @@ int main(int argc, char **argv)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_every_value_gives_the_required_margin_and_beyond_it_none_passes),
     };
-    if (argc != 3) return 2;
+    if (argc != 4) return 2;
     demo = argv[1];
     derating = argv[2];
+    stride = (size_t)strtoul(argv[3], NULL, 10);
+    if (stride == 0) return 2;
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
