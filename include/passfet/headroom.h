@@ -31,6 +31,7 @@ typedef struct pf_room {
     double value, beyond; /* magnitudes; see the kinds */
     double relative;      /* |value - from| / from; temperatures: 1 K counts as 1 % */
     pf_verdict here;      /* verdict at from */
+    pf_verdict now;       /* verdict under the profile as it is; of pf_solve alone */
     pf_verdict there;     /* verdict at beyond */
     pf_check stop;        /* the check that decides at beyond; slot -1: no event */
     unsigned corner;      /* of its event under the varied profile, see corner_value */

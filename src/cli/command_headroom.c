@@ -13,6 +13,9 @@ const pf_option pf_headroom_options[] = {
      "output_slew or ambient_temperature at which the part passes; every part without PART"},
     PF_REVIEW_OPTIONS};
 
+/* From so many parts on it pays to find out which corners of the profile can never be the worst. */
+#define PRUNE_PARTS 4000
+
 /* Solutions of many parts. */
 typedef struct solutions {
     pf_solution *item;
@@ -49,16 +52,14 @@ static pf_status add_solution(const pf_review *review, pf_parameter parameter, s
 {
     const pf_part *part = &review->stored.part;
     const pf_plan *plan = review->cards.plan[0];
-    pf_assessment now;
     pf_solution found = {0};
     pf_status status =
         pf_grow((void **)&list->item, &list->capacity, list->count + 1, sizeof *list->item);
-    if (status == PF_OK) status = pf_assess(plan, part, review->scratch, &now);
     if (status == PF_OK) status = pf_solve(plan, part, review->scratch, parameter, &found.room);
     if (status == PF_OK) status = pf_text_copy(&found.part, part->name);
     if (status == PF_OK) status = pf_text_copy(&found.maker, part->maker);
     if (status == PF_OK) status = pf_text_copy(&found.package, part->package);
-    found.verdict = now.verdict;
+    found.verdict = found.room.now;
     if (status == PF_OK) {
         list->item[list->count++] = found;
         return PF_OK;
@@ -87,7 +88,10 @@ static pf_status solve_all(pf_review *review, pf_parameter parameter, solutions 
     const pf_query query = {.as_of = review->as_of, .as_stored = true};
     pf_cursor *cursor = NULL;
     bool more = true;
-    pf_status status = pf_cursor_open(review->store, &query, &cursor, error);
+    int64_t parts = 0;
+    pf_status status = pf_store_count(review->store, &parts, error);
+    if (status == PF_OK && parts >= PRUNE_PARTS) status = pf_plan_prune(review->cards.plan[0]);
+    if (status == PF_OK) status = pf_cursor_open(review->store, &query, &cursor, error);
     while (status == PF_OK) {
         status = pf_cursor_next(cursor, &review->stored, &more, error);
         if (status != PF_OK || !more) break;

@@ -328,6 +328,7 @@ pf_status pf_solve(const pf_plan *plan, const pf_part *part, pf_scratch *scratch
     if (status != PF_OK) return status;
     vary(&on, parameter);
     status = solve(&on, room);
+    room->now = on.known.verdict;
     varying_clear(&on);
     return status;
 }
