@@ -123,7 +123,7 @@ typedef struct pf_stress {
     pf_cause running_cause;
     double soa_margin; /* smallest of the outcomes'; NaN where none could be assessed */
     int limiting_slot; /* its slot, -1 for none */
-    double peak_junction_degC;
+    double peak_junction_degC; /* highest of all events; NaN where that of some event is not known */
     unsigned remarks;
     size_t count;
     pf_outcome outcome[PF_SLOTS_MAX]; /* by slot of the plan */

@@ -333,14 +333,27 @@ static pf_status evaluate_slot(const evaluation *on, size_t count, size_t index,
     return status;
 }
 
+/* The highest junction of all events; not known where that of some event is not. */
+static double highest_junction(const pf_plan *plan, const pf_stress *stress)
+{
+    double highest = PF_NONE;
+    for (size_t i = 0; i < plan->count; i++) {
+        double junction = stress->outcome[i].peak_junction_degC;
+        if (plan->slot[i].event == PF_TURN_OFF) continue;
+        if (!pf_is_stated(junction)) return PF_NONE;
+        highest = fmax(highest, junction);
+    }
+    return highest;
+}
+
 /* The part's own numbers: the worst of its events'. */
 static void summarise(const pf_plan *plan, pf_stress *stress)
 {
-    stress->soa_margin = stress->peak_junction_degC = PF_NONE;
+    stress->soa_margin = PF_NONE;
     stress->limiting_slot = -1;
+    stress->peak_junction_degC = highest_junction(plan, stress);
     for (size_t i = 0; i < plan->count; i++) {
         const pf_outcome *outcome = &stress->outcome[i];
-        stress->peak_junction_degC = fmax(stress->peak_junction_degC, outcome->peak_junction_degC);
         if (!pf_is_stated(outcome->soa_margin)) continue;
         if (stress->limiting_slot >= 0 && !(outcome->soa_margin < stress->soa_margin)) continue;
         stress->soa_margin = outcome->soa_margin;
