@@ -152,7 +152,14 @@ static pf_status view_event(const context *on, size_t index, pf_event_view *view
 {
     const pf_slot *slot = &on->plan->slot[index];
     const pf_outcome *outcome = &on->stress->outcome[index];
-    *view = (pf_event_view){.event = slot->event};
+    *view = (pf_event_view){.event = slot->event,
+                            .derating = PF_NONE,
+                            .vds_V = PF_NONE,
+                            .id_A = PF_NONE,
+                            .time_s = PF_NONE,
+                            .soa.current_A = PF_NONE,
+                            .limit_A = PF_NONE,
+                            .voltage_at_peak_V = PF_NONE};
     for (int i = 0; i < PF_PARAMETER_COUNT; i++)
         view->value[i] = pf_plan_corner_value(on->plan, index, outcome->corner, (pf_parameter)i);
     view->hot_rise_K = (on->stress->allowed_degC - outcome->start_degC) / outcome->soa_margin;

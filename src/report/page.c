@@ -14,7 +14,8 @@ static const char style[] =
     "h1{font-size:1.5em}h2{font-size:1.2em;border-top:1px solid #000;padding-top:.6em}\n"
     "table{border-collapse:collapse;font-size:.87em;margin:.8em 0}\n"
     "th,td{padding:.15em .6em;text-align:left;border-bottom:1px solid #bbb;vertical-align:top}\n"
-    "th{border-bottom:1px solid #000}.n{text-align:right}.stall{border:2px solid "
+    "th{border-bottom:1px solid #000}.n{text-align:right;white-space:nowrap}.stall{border:2px "
+    "solid "
     "#000;padding:.6em}\n"
     "svg{width:100%;height:auto;font:12px sans-serif}\n"
     ".grid{stroke:#ddd}.decade{stroke:#999}.leader{stroke:#999;stroke-dasharray:2 2}\n"
@@ -161,11 +162,15 @@ static void write_event(FILE *out, const pf_plan *plan, size_t slot, const pf_ou
                         const pf_event_view *view)
 {
     pf_event event = pf_plan_event(plan, slot);
-    bool rectangle = !view->step_count && event != PF_RUNNING && event != PF_TURN_OFF;
+    bool rectangle = pf_event_is_rectangle(event), wave = view->voltage_at_peak_V > 0;
+    double wave_V = wave ? view->voltage_at_peak_V : PF_NONE;
     fprintf(out, "<tr><td class=\"n\">%zu</td>", slot + 1);
     text_cell(out, pf_plan_event_name(plan, slot));
-    value_cell(out, rectangle ? view->vds_V : PF_NONE, PF_VOLTAGE);
-    value_cell(out, rectangle ? view->id_A : outcome->peak_current_A, PF_CURRENT);
+    value_cell(out, rectangle ? view->vds_V : wave_V, PF_VOLTAGE);
+    if (rectangle || wave)
+        value_cell(out, rectangle ? view->id_A : outcome->peak_power_W / wave_V, PF_CURRENT);
+    else
+        value_cell(out, outcome->peak_current_A, PF_CURRENT);
     value_cell(out, outcome->duration_s > 0 ? outcome->duration_s : PF_NONE, PF_TIME);
     value_cell(out, event == PF_TURN_OFF ? outcome->avalanche_J : outcome->energy_J, PF_ENERGY);
     value_cell(out, rectangle ? view->limit_A : PF_NONE, PF_CURRENT);
@@ -227,7 +232,9 @@ static void write_caption(FILE *out, const pf_part *part)
         " \xC2\xB0"
         "C. Squares: rectangular stress, with a bar up to the current that the sheet allows there "
         "for so long from the starting temperature. Circles: the steps of a waveform; what counts "
-        "is its superposition, not a single step. Numbers: rows of the table.</p>\n",
+        "is its superposition, not a single step. Numbers: rows of the table, where V_DS and I_D "
+        "of a "
+        "waveform are those at peak power.</p>\n",
         out);
 }
 

@@ -6,12 +6,13 @@
 #include "report/plot.h"
 #include "base/number.h"
 #include "report/markup.h"
+#include "report/words.h"
 
 #include <math.h>
 #include <string.h>
 
 /* The sheet, and the frame in it, in SVG units. */
-enum { WIDTH = 720, HEIGHT = 470, LEFT = 64, RIGHT = 610, TOP = 16, BOTTOM = 420 };
+enum { WIDTH = 720, HEIGHT = 496, LEFT = 64, RIGHT = 610, TOP = 16, BOTTOM = 420 };
 
 #define LABEL_STEP 13.0 /* least distance between two labels */
 
@@ -166,15 +167,20 @@ static void draw_number(const plot *on, const char *number, double x, double y)
 
 static bool is_rectangle(const pf_plan *plan, const pf_event_view *view, size_t slot)
 {
-    pf_event event = pf_plan_event(plan, slot);
-    if (event == PF_RUNNING || event == PF_TURN_OFF || view[slot].step_count) return false;
-    return view[slot].vds_V > 0 && view[slot].id_A > 0;
+    return pf_event_is_rectangle(pf_plan_event(plan, slot)) && view[slot].vds_V > 0 &&
+           view[slot].id_A > 0;
+}
+
+/* Equal, or both not known. */
+static bool same_number(double left, double right)
+{
+    return left == right || (isnan(left) && isnan(right));
 }
 
 static bool same_place(const pf_event_view *left, const pf_event_view *right)
 {
     return left->vds_V == right->vds_V && left->id_A == right->id_A &&
-           left->limit_A == right->limit_A;
+           same_number(left->limit_A, right->limit_A);
 }
 
 /* The numbers of all rectangles at one place; false where an earlier one has drawn them. */
@@ -245,6 +251,24 @@ static void draw_stress(const plot *on, const pf_plan *plan, const pf_explanatio
     }
 }
 
+/* What the numbers stand for, so that a plot taken off its page still says it. */
+static void draw_key(const plot *on, const pf_plan *plan, const pf_explanation *explanation)
+{
+    enum { PER_LINE = 6 };
+    size_t written = 0;
+    for (size_t slot = 0; slot < explanation->assessment.stress.count; slot++) {
+        const pf_event_view *view = &explanation->view[slot];
+        if (!view->step_count && !is_rectangle(plan, explanation->view, slot)) continue;
+        if (written % PER_LINE == 0)
+            fprintf(on->out, "%s<text x=\"%d\" y=\"%zu\">", written ? "</text>\n" : "", LEFT,
+                    BOTTOM + 56 + written / PER_LINE * 15);
+        fprintf(on->out, "%s%zu ", written % PER_LINE ? "; " : "", slot + 1);
+        pf_markup_text(on->out, pf_plan_event_name(plan, slot));
+        written++;
+    }
+    if (written) fputs("</text>\n", on->out);
+}
+
 void pf_plot_soa(FILE *out, size_t number, const pf_plan *plan, const pf_part *part,
                  const pf_explanation *explanation)
 {
@@ -264,5 +288,6 @@ void pf_plot_soa(FILE *out, size_t number, const pf_plan *plan, const pf_part *p
     draw_stress(&on, plan, explanation);
     fputs("</g>\n", out);
     label_lines(&on, part);
+    draw_key(&on, plan, explanation);
     fputs("</svg>\n", out);
 }

@@ -13,17 +13,11 @@ static void print_cell(FILE *out, double value, int width)
     pf_text_field_print(out, number, (size_t)width, true);
 }
 
-static bool is_rectangle(pf_event event)
-{
-    return event == PF_SHORT_AT_START || event == PF_SHORT_RUNNING || event == PF_TRIP ||
-           event == PF_RETRY;
-}
-
 static void print_row(FILE *out, const pf_sheet_subject *subject, size_t slot)
 {
     const pf_outcome *outcome = &subject->explanation->assessment.stress.outcome[slot];
     const pf_event_view *view = &subject->explanation->view[slot];
-    bool rectangle = is_rectangle(view->event), turn_off = view->event == PF_TURN_OFF;
+    bool rectangle = pf_event_is_rectangle(view->event), turn_off = view->event == PF_TURN_OFF;
     double vds_V = rectangle ? view->vds_V : view->voltage_at_peak_V;
     double id_A = rectangle ? view->id_A : outcome->peak_power_W / view->voltage_at_peak_V;
     fputs("  ", out);

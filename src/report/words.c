@@ -56,6 +56,12 @@ const char *pf_limiting_event(const pf_plan *plan, const pf_assessment *assessme
     return slot < 0 ? "" : pf_plan_event_name(plan, (size_t)slot);
 }
 
+bool pf_event_is_rectangle(pf_event event)
+{
+    return event == PF_SHORT_AT_START || event == PF_SHORT_RUNNING || event == PF_TRIP ||
+           event == PF_RETRY;
+}
+
 int pf_setting_print(const pf_profile *profile, char *text, size_t room)
 {
     static const char *const side[] = {"", " high side", " low side"};

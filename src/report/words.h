@@ -3,6 +3,7 @@
 #define REPORT_WORDS_H
 
 #include <passfet/ranking.h>
+#include <stdbool.h>
 #include <stdio.h>
 
 /* A parameter as entered: "-40.5 ... -57 V", "4 A", "-" where it is not stated. */
@@ -15,6 +16,9 @@ double pf_parameter_signed(const pf_profile *profile, pf_parameter parameter, do
 
 /* Name of the event that limits a part; "" where no event could be assessed. */
 const char *pf_limiting_event(const pf_plan *plan, const pf_assessment *assessment);
+
+/* Whether an event's stress is one pulse of constant voltage and current, or a train of such pulses. */
+bool pf_event_is_rectangle(pf_event event);
 
 /* "N low side, power_limit start, from running temperature". */
 int pf_setting_print(const pf_profile *profile, char *text, size_t room);

@@ -242,6 +242,18 @@ class Json(CommandTest):
         self.import_parts({})
         self.assertEqual(self.rank(self.card(), "--as-of", "2001-01-01", status=1)["parts"], [])
 
+    def test_the_signs_of_a_p_channel_sheet_change_nothing(self):
+        plain = {"polarity": "P"}
+        signed = {"polarity": "P", "part": "T2", "vds_max [V]": "-100", "id_cont [A]": "-100",
+                  "id_pulse [A]": "-400", "soa": "1ms -1:-400 -10:-100 -80:-8 | "
+                  "10ms -1:-400 -10:-60 -80:-4 | dc -1:-100 -10:-10 -80:-0.6"}
+        self.import_parts(plain, signed)
+        one, two = self.rank(self.card(polarity=",P,,"))["parts"]
+        self.assertEqual(one["verdict"], "pass")
+        for part in (one, two):
+            del part["rank"], part["part"]
+        self.assertEqual(one, two)
+
     def test_a_banned_part_never_passes(self):
         self.import_parts({"status": "banned", "status_reason": "burnt two boards"})
         part = self.rank(self.card(), status=1)["parts"][0]
@@ -301,6 +313,23 @@ class Page(CommandTest):
         self.assertIn(f"{part['soa_margin']:.3g}", text)
         for words in ("DC</text>", "10 us</text>", "-40.5 V .. -57 V"):
             self.assertIn(words, text)
+
+    def test_every_stress_in_a_plot_has_a_number_that_the_plot_explains(self):
+        self.import_demo()
+        for plot in re.findall(r"<svg.*?</svg>", self.page(CARD), re.S):
+            groups = re.findall(r'<g class="number"><text[^>]*>([^<]*)</text>', plot)
+            shapes = plot.count('class="stress"') + bool(re.search(r'class="step"', plot))
+            self.assertGreaterEqual(len(groups), shapes)
+            numbers = [number for group in groups for number in group.split(", ")]
+            key = re.findall(r"(\d+) (?:start_up|short_\w+|trip|retry|supply_step)", plot)
+            self.assertEqual(sorted(numbers), sorted(key))
+
+    def test_stress_that_could_not_be_worked_out_is_a_dash_and_not_0(self):
+        self.import_parts({"rdson_max @ 10 V [mOhm]": ""})
+        self.assertNotRegex(self.page(self.card(), status=1), r">0( [VAJsm]+)?</td>")
+        out, _ = self.run_it("explain", "T1", self.card(), status=1)
+        for event in ("start_up", "short_at_start", "short_running"):
+            self.assertRegex(out, rf"\n  {event}( +-){{10}}\n")
 
     def test_foreign_texts_stay_texts(self):
         self.import_parts({"part": "<b>&\"x", "maker": "<script>"})
