@@ -158,7 +158,8 @@ static pf_status settle_reason(pf_store *store, const pf_part *before, pf_part *
     const char *given = part->status_reason, *old = before->status_reason;
     bool stale = given && old && !same && strcmp(given, old) == 0;
     const char *reason = given && !stale ? given : NULL;
-    if (!reason && part->status && (!same || banned)) reason = store->import.why;
+    bool moved = before->status && part->status && !same;
+    if (!reason && (moved || banned)) reason = store->import.why;
     if (!reason && same && banned) reason = old;
     if (banned && !reason)
         return pf_error_set(error, PF_BAD_INPUT,

@@ -209,6 +209,27 @@ static void test_a_banned_part_needs_a_reason(void **state)
     pf_part_clear(&merged);
 }
 
+/* The reason of an import belongs to its entry. It is a reason of the status only where that moves. */
+static void test_a_part_that_comes_in_active_has_no_reason_of_its_status(void **state)
+{
+    bench *on = *state;
+    pf_part_change change;
+    pf_part merged;
+    pf_import_effect effect;
+    pf_part_init(&merged);
+    import_open(on, "ana", MONDAY, "first sheets");
+    change_make(&change, "A", NULL, 1);
+    change_text(&change, "status", "active");
+    assert_int_equal(pf_store_import_part(on->store, &change, &merged, &effect, &on->error), PF_OK);
+    assert_null(merged.status_reason);
+    change_text(&change, "status", "obsolete");
+    assert_int_equal(pf_store_import_part(on->store, &change, &merged, &effect, &on->error), PF_OK);
+    assert_string_equal(merged.status_reason, "first sheets");
+    pf_store_import_rollback(on->store);
+    pf_part_change_clear(&change);
+    pf_part_clear(&merged);
+}
+
 static void test_a_rolled_back_import_leaves_nothing(void **state)
 {
     bench *on = *state;
@@ -339,6 +360,7 @@ int main(void)
         TEST(test_two_makers_of_one_number_must_be_named),
         TEST(test_a_maker_stated_later_is_no_new_part),
         TEST(test_a_banned_part_needs_a_reason),
+        TEST(test_a_part_that_comes_in_active_has_no_reason_of_its_status),
         TEST(test_a_rolled_back_import_leaves_nothing),
         TEST(test_the_content_hash_knows_no_history),
         TEST(test_the_same_part_twice_in_an_import_is_one_revision),
