@@ -1,6 +1,7 @@
 /* importing.c: one run of import. */
 #include "cli/importing.h"
 #include "base/memory.h"
+#include "cli/earlier.h"
 #include "report/csv.h"
 
 #include <errno.h>
@@ -137,6 +138,8 @@ static pf_status store_part(pf_import_run *run, pf_store *store, const pf_part_c
     pf_part_init(&merged);
     pf_status status = pf_store_import_merge(store, change, &merged, &effect, &error);
     if (status == PF_OK) status = judge(run, change, &merged, effect);
+    if (status == PF_OK && effect == PF_EFFECT_CHANGED)
+        status = pf_earlier_warn(run, store, change, &merged);
     if (status == PF_OK && run->problems.refusals == before) {
         status = pf_store_import_part(store, change, &merged, &effect, &error);
         if (status == PF_OK) run->effect[effect]++;
@@ -172,7 +175,8 @@ pf_status pf_import_run_store(pf_import_run *run, pf_store *store, const pf_impo
                               pf_error *error)
 {
     pf_status status = pf_store_import_begin(store, facts, &run->already, error);
-    if (status != PF_OK || run->already) return status;
+    if (status != PF_OK) return status;
+    if (run->already) return pf_earlier_moved(run, store, &run->moved);
     status = store_parts(run, store);
     if (status == PF_OK) return finish(run, store, error);
     pf_store_import_rollback(store);
@@ -193,6 +197,11 @@ void pf_import_run_summary(const pf_import_run *run, const char *database)
             run->source_count, plural(run->source_count));
     if (run->already) {
         fprintf(out, "Nothing to do: already imported as number %lld.\n", (long long)run->already);
+        if (run->moved)
+            fprintf(out,
+                    "%zu of its parts state%s something else by now: later imports changed them. "
+                    "To go back, undo those.\n",
+                    run->moved, run->moved == 1 ? "s" : "");
         return;
     }
     fprintf(out, "Parts: %zu new, %zu changed, %zu unchanged; %zu warning%s, %zu refusal%s.\n",

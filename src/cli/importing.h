@@ -23,6 +23,7 @@ typedef struct pf_import_run {
     const char *bad_file;    /* its name */
     size_t effect[3];        /* parts, by pf_import_effect */
     int64_t number, already; /* of this import; of the one that had the same content before */
+    size_t moved;            /* parts of the latter that state something else by now */
     bool stored;
     bool progress_shown;
 } pf_import_run;

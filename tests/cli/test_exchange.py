@@ -112,6 +112,31 @@ class Import(CommandTest):
         self.assertIn("No change", self.run_it("import", *RATINGS[::-1])[0])
         self.assertEqual(before, self.dump())
 
+    def test_a_repeat_tells_of_parts_that_were_changed_since(self):
+        first = self.write("a.csv", parts_csv({"price": "1"}))
+        self.run_it("import", first)
+        self.assertNotIn("by now", self.run_it("import", first)[0])
+        self.run_it("import", self.write("b.csv", parts_csv({"price": "2"})))
+        out, _ = self.run_it("import", first)
+        self.assertIn("already imported as number 1", out)
+        self.assertIn("1 of its parts states something else by now", out)
+        self.run_it("undo", "2")
+        self.assertNotIn("by now", self.run_it("import", first)[0])
+
+    def test_a_blank_cell_that_takes_curves_away_is_warned_of(self):
+        self.import_parts({}, {"part": "T2"})
+        _, err = self.run_it("import", self.write("b.csv", parts_csv({"soa": ""})))
+        self.assertIn("b.csv:2: soa: T1: a blank cell takes away the SOA stated before", err)
+        self.assertEqual(err.count("takes away"), 1)
+        _, err = self.run_it("import", self.write("b.csv", parts_csv({"soa": "", "price": "3"})))
+        self.assertNotIn("takes away", err)
+
+    def test_two_databases_of_the_same_files_state_the_same_whoever_made_them(self):
+        for name, why in (("one", "first"), ("two", "second")):
+            self.run_it("--db", name + ".db", "import", *RATINGS, "--by", name, "--why", why)
+        self.assertEqual(*[self.run_it("--db", name + ".db", "export")[0]
+                           for name in ("one", "two")])
+
     def test_a_dry_run_shows_text_and_value_of_every_cell(self):
         self.write("p.csv", parts_csv({}))
         out, _ = self.run_it("import", "p.csv", "--dry-run")
