@@ -224,6 +224,34 @@ static void write_reasons(FILE *out, const pf_plan *plan, const pf_assessment *o
     fputs("</ul>\n", out);
 }
 
+/* One end of the window: a time, and by how much the timer keeps away from it. */
+static void write_gap(FILE *out, const char *what, double time_s, double gap)
+{
+    char time[PF_UNIT_ROOM];
+    pf_value_print(time, time_s, PF_TIME, 4);
+    fprintf(out, "%s %s", what, time);
+    if (gap == gap) {
+        fputs(" (gap ", out);
+        pf_markup_number(out, 100 * gap, 3);
+        fputs(" %)", out);
+    }
+}
+
+static void write_window(FILE *out, const pf_timer_window *window)
+{
+    char least[PF_UNIT_ROOM], most[PF_UNIT_ROOM];
+    pf_value_print(least, window->timer_min_s, PF_TIME, 4);
+    pf_value_print(most, window->timer_max_s, PF_TIME, 4);
+    fputs("<p>Timer window: ", out);
+    if (window->cuts_starts)
+        write_gap(out, "slowest good start", window->slowest_start_s, window->start_gap);
+    fprintf(out, "%sfault time %s to %s; ", window->cuts_starts ? "; " : "", least, most);
+    write_gap(out, "longest fault that the part survives", window->longest_fault_s,
+              window->fault_gap);
+    fprintf(out, "%s%s.</p>\n", window->fault_is_open ? ", unassessed beyond" : "",
+            window->no_value ? ": no timer value exists" : "");
+}
+
 static void write_caption(FILE *out, const pf_part *part)
 {
     fputs("<p>Lines: the sheet's safe operating area at a case of ", out);
@@ -254,6 +282,7 @@ void pf_page_part(FILE *out, size_t place, const pf_plan *plan, const pf_part *p
     else
         fputs("<p>The sheet states no safe operating area.</p>\n", out);
     write_events(out, plan, explanation);
+    write_window(out, &explanation->window);
     write_reasons(out, plan, &explanation->assessment);
     fputs("</section>\n", out);
 }
