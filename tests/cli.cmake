@@ -17,3 +17,7 @@ pf_cli_test(test_manual)
 add_test(NAME install
   COMMAND sh ${CMAKE_CURRENT_SOURCE_DIR}/install/run.sh ${CMAKE_BINARY_DIR} ${CMAKE_CURRENT_SOURCE_DIR}/install)
 set_tests_properties(install PROPERTIES LABELS plain_only TIMEOUT 900)
+
+# What the README promises of a fresh clone.
+add_test(NAME demo_twice COMMAND sh ${CMAKE_CURRENT_SOURCE_DIR}/install/demo_twice.sh ${PROJECT_SOURCE_DIR})
+set_tests_properties(demo_twice PROPERTIES LABELS plain_only TIMEOUT 900)

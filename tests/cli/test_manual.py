@@ -1,4 +1,4 @@
-"""Options, --help and the manual agree; what the README shows is what the program does.
+"""Options, --help and the manual agree; what the README shows is what the program does; links lead on.
 
 With --write behind the two usual arguments the section COMMANDS of docs/passfet.1 is written anew.
 """
@@ -115,6 +115,16 @@ class Readme(CommandTest):
                 self.assertEqual(changing.sub("*", text), changing.sub("*", said))
                 said, compared = None, compared + 1
         self.assertGreater(compared, 0)
+
+
+class Links(CommandTest):
+    def test_every_link_of_the_documents_leads_to_a_file(self):
+        pages = [SOURCE / "README.md", SOURCE / "DEVELOPERS.md", SOURCE / "data" / "README.md",
+                 *(SOURCE / "docs").rglob("*.md")]
+        for page in pages:
+            for target in re.findall(r"\]\(([^)#\s]+)[^)]*\)", page.read_text()):
+                if "://" not in target:
+                    self.assertTrue((page.parent / target).exists(), f"{page}: {target}")
 
 
 def write():

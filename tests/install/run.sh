@@ -16,6 +16,7 @@ export PKG_CONFIG_PATH
 echo "the command runs, and its manual is there"
 "$prefix/bin/passfet" --version
 test -f "$prefix/share/man/man1/passfet.1"
+test -f "$prefix/share/doc/passfet/docs/methods.md"
 
 echo "every public header can be included alone"
 for header in "$prefix"/include/passfet/*.h; do
