@@ -157,11 +157,13 @@ static void label_lines(const plot *on, const pf_part *part)
 
 /* --- Stress -------------------------------------------------------------------------------- */
 
+/* Above to the right; near the frame's end below to the left, out of the way of a chain that comes down
+** from there. */
 static void draw_number(const plot *on, const char *number, double x, double y)
 {
     fputs("<g class=\"number\">", on->out);
     bool left = x > RIGHT - 70;
-    label(on->out, x + (left ? -7 : 7), y - 5, left ? "end" : "start", number);
+    label(on->out, x + (left ? -7 : 7), y + (left ? 15 : -5), left ? "end" : "start", number);
     fputs("</g>\n", on->out);
 }
 
