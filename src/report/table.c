@@ -24,8 +24,9 @@ enum {
 /* Fields in a line of the head, each this wide. */
 enum { HEAD_LABEL = 18, HEAD_VALUE = 30 };
 
+/* A label and its value: the place-th, after one that was so wide. No blanks end a line. */
 static void print_head_value(FILE *out, const pf_profile *profile, pf_parameter parameter,
-                             int *place)
+                             int *place, int *width)
 {
     char value[PF_INTERVAL_ROOM], label[64];
     if (!pf_is_stated(profile->value[parameter].max)) return;
@@ -33,12 +34,13 @@ static void print_head_value(FILE *out, const pf_profile *profile, pf_parameter 
     for (char *c = label; *c; c++)
         if (*c == '_') *c = ' ';
     pf_interval_print(value, profile, parameter);
-    fputs(*place % 2 ? "" : "  ", out);
-    pf_text_field_print(out, label, HEAD_LABEL + 2, false);
     if (*place % 2)
-        fprintf(out, "%s\n", value);
+        fprintf(out, "%*s", HEAD_VALUE - 2 - *width > 0 ? HEAD_VALUE - 2 - *width : 1, "");
     else
-        pf_text_field_print(out, value, HEAD_VALUE - 2, false);
+        fputs(*place ? "\n  " : "  ", out);
+    pf_text_field_print(out, label, HEAD_LABEL + 2, false);
+    fputs(value, out);
+    *width = (int)pf_text_width(value);
     ++*place;
 }
 
@@ -76,12 +78,12 @@ static void print_card(FILE *out, const pf_plan *plan)
     };
     const pf_profile *profile = pf_plan_profile(plan);
     char setting[200];
-    int place = 0;
+    int place = 0, width = 0;
     pf_setting_print(profile, setting, sizeof setting);
     fprintf(out, "Card %s: %s\n", profile->name, setting);
     for (size_t i = 0; i < sizeof shown / sizeof *shown; i++)
-        print_head_value(out, profile, shown[i], &place);
-    if (place % 2) fputc('\n', out);
+        print_head_value(out, profile, shown[i], &place, &width);
+    fputc('\n', out);
     print_window(out, plan);
     print_rule(out, &profile->derating);
     if (pf_plan_stall(plan)) {

@@ -135,9 +135,9 @@ pf_status pf_store_merge(pf_store *store, pf_store *other, const pf_import_facts
     status = merge_all(&merge, error);
     if (status == PF_OK && prefer == PF_PREFER_NONE && summary->conflicts)
         status = pf_error_set(error, PF_BAD_INPUT,
-                              "%zu parts were changed on both sides: say which to prefer, ours, "
-                              "theirs or newer",
-                              summary->conflicts);
+                              "both sides changed %zu part%s: say which to prefer, ours, theirs "
+                              "or newer",
+                              summary->conflicts, summary->conflicts == 1 ? "" : "s");
     if (status == PF_OK) return pf_store_import_commit(store, number, error);
     pf_store_import_rollback(store);
     return status;

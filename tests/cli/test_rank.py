@@ -27,6 +27,7 @@ class Table(CommandTest):
         out, _ = self.run_it("rank", *arguments, status=status)
         for line in out.splitlines():
             self.assertLessEqual(width(line), 100, line)
+            self.assertEqual(line, line.rstrip())
         return out
 
     def test_no_line_is_wider_than_100_columns(self):
