@@ -121,9 +121,9 @@ typedef struct pf_stress {
     double rdson_cold_ohm;    /* at 25 degC and the gate drive used */
     double rdson_drive_V;     /* rated gate drive used */
     pf_cause running_cause;
-    double soa_margin; /* smallest of the outcomes'; NaN where none could be assessed */
-    int limiting_slot; /* its slot, -1 for none */
-    double peak_junction_degC; /* highest of all events; NaN where that of some event is not known */
+    double soa_margin;         /* smallest of the outcomes'; NaN where none could be assessed */
+    int limiting_slot;         /* its slot, -1 for none */
+    double peak_junction_degC; /* highest of all events; NaN where some event's is not known */
     unsigned remarks;
     size_t count;
     pf_outcome outcome[PF_SLOTS_MAX]; /* by slot of the plan */

@@ -132,8 +132,9 @@ static double case_warming(const trial *test, const pf_corner *at, double interv
     if (!pf_is_stated(board)) {
         if (test->subject.zth->path == PF_JUNCTION_AMBIENT) return 0; /* Zth has it already */
         test->on->stress->remarks |= PF_REMARK_CASE_FROM_RTH;
-        return pf_is_stated(part->rth_jc_KpW) ? part->rth_ja_KpW - part->rth_jc_KpW
-                                              : part->rth_ja_KpW;
+        /* a sheet whose R_thJA is not above its R_thJC would cool the case: its R_thJA then */
+        double board_part = part->rth_ja_KpW - part->rth_jc_KpW;
+        return board_part > 0 ? board_part : part->rth_ja_KpW;
     }
     return pf_is_stated(heat) ? board * -expm1(-count * interval_s / (board * heat)) : board;
 }

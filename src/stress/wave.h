@@ -35,8 +35,8 @@ typedef struct pf_waves {
 pf_start pf_start_at(const pf_profile *profile, pf_event event, const pf_corner *corner,
                      double crss_F);
 
-/* Waveforms of count starts, held until hold_s where an output sticks. prune: set rows aside that
-** can never be the worst. PF_NO_MEMORY is the only failure. */
+/* Waveforms of count starts, held until hold_s where an output sticks. PF_NO_MEMORY is the only
+** failure. */
 pf_status pf_waves_from_starts(pf_waves *waves, const pf_start *start, size_t count,
                                double hold_s) PF_MUST_USE;
 

@@ -4,7 +4,7 @@
 # test_store_health makes the same claim with a limit on the pages of the file.
 set -u
 driver=$1
-folder=$(mktemp -d "${TMPDIR:-/tmp}/passfet-XXXXXX")
+folder=$(mktemp -d)
 if ! mount -t tmpfs -o size=2m none "$folder" 2>/dev/null; then
     rmdir "$folder"
     echo "skipped: no file system may be mounted here"

@@ -5,7 +5,7 @@
 # PF_FAULT_FULL set: also every call of laying out a new database, and errors beside kills.
 set -u
 driver=$1
-folder=$(mktemp -d "${TMPDIR:-/tmp}/passfet-XXXXXX")
+folder=$(mktemp -d)
 trap 'rm -rf "$folder"' EXIT
 cd "$folder" || exit 1
 

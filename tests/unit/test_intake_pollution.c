@@ -40,8 +40,7 @@ static bool same_content(const pf_changes *one, const pf_changes *other)
 static bool names_line(const pf_problems *problems, size_t line, pf_severity least)
 {
     for (size_t i = 0; i < problems->count; i++)
-        if (problems->item[i].severity >= least && problems->item[i].line == line)
-            return true;
+        if (problems->item[i].severity >= least && problems->item[i].line == line) return true;
     return false;
 }
 
