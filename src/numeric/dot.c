@@ -9,7 +9,7 @@
 
 #if defined(__x86_64__) && defined(__linux__) && !defined(__SANITIZE_ADDRESS__) &&                 \
     (defined(__GNUC__) && !defined(__clang__))
-#define PF_WIDE __attribute__((target_clones("default", "arch=haswell", "arch=skylake-avx512")))
+#define PF_WIDE __attribute__((target_clones("default", "arch=x86-64-v3", "arch=x86-64-v4")))
 #else
 #define PF_WIDE
 #endif
